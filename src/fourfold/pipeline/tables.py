@@ -1,0 +1,44 @@
+"""The fourfold table of each binary exposure in the analysis set."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+
+import numpy as np
+from numpy.typing import NDArray
+
+from fourfold.data.columns import Rows
+from fourfold.measures.fourfold_table import fourfold_table
+from fourfold.results import tree
+
+
+def fourfold_tables(
+    rows: Rows,
+    event: NDArray[np.bool_],
+    variables: Sequence[tree.Variable],
+    design: str,
+    analysis: tree.Analysis,
+) -> list[tree.FourfoldTable]:
+    """One table for each binary exposure (or predictor), cells counted in people."""
+    weight = np.ones(rows.n, dtype=np.int64) if rows.counts is None else rows.counts
+    found = []
+    for variable in variables:
+        if variable.kind != "binary" or variable.role not in ("exposure", "predictor"):
+            continue
+        exposed = rows.columns[variable.name].values == 1
+        cells = [
+            int(weight[mask].sum())
+            for mask in (exposed & event, exposed & ~event, ~exposed & event, ~exposed & ~event)
+        ]
+        found.append(
+            fourfold_table(
+                *cells,
+                design=design,
+                confidence=analysis.confidence,
+                exposure=variable.name,
+                label=variable.label,
+                exposed_label=variable.present or "present",
+                unexposed_label=variable.reference or "absent",
+            )
+        )
+    return found
