@@ -288,12 +288,10 @@ def _as_recorded(x: float) -> Decimal:
     return shortest.normalize()
 
 
-_RAISED = str.maketrans("0123456789-", "⁰¹²³⁴⁵⁶⁷⁸⁹⁻")
-
-
 def _scientific(exact: Decimal) -> str:
     power = exact.adjusted()
     mantissa = _round(exact.scaleb(-power), 1)
     if abs(mantissa) >= 10:
         power, mantissa = power + 1, mantissa / 10
-    return f"{_grouped(_round(mantissa, 1))} × 10{str(power).translate(_RAISED)}"
+    # A caret, since few fonts have all the raised digits.
+    return f"{_grouped(_round(mantissa, 1))} × 10^{_grouped(Decimal(power))}"
