@@ -27,7 +27,7 @@ class Panel:
 
 
 def below(canvas: Canvas, panel: Panel, scale: Scale, title: str = "", *, grid: bool = False) -> None:
-    """Draw the axis under a panel, with its title beneath the labels."""
+    """Draw the axis under a panel, with its title beneath the labels; the canvas grows to hold them."""
     if grid:
         data = "".join(_step(scale(t.value), panel.top, "V", panel.bottom) for t in scale.ticks)
         canvas.path(data, "grid")
@@ -46,9 +46,9 @@ def below(canvas: Canvas, panel: Panel, scale: Scale, title: str = "", *, grid: 
         canvas.text((x, panel.bottom + 15), tick.label, "muted", anchor="middle", size=SMALL)
     if title:
         room = panel.right - panel.left + 60
-        lettering.block(title, room, most=2).write(
-            canvas, (panel.middle[0], panel.bottom + 32), "ink", "middle"
-        )
+        words = lettering.block(title, room, most=2)
+        words.write(canvas, (panel.middle[0], panel.bottom + 32), "ink", "middle")
+        canvas.height = max(canvas.height, panel.bottom + 24 + words.height)
 
 
 def beside(canvas: Canvas, panel: Panel, scale: Scale, title: str = "", *, grid: bool = True) -> None:

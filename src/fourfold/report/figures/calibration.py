@@ -9,8 +9,8 @@ from fourfold.report.figures.canvas import SMALL, Canvas
 from fourfold.report.figures.figure import Figure, Setting
 from fourfold.results import tree
 
-_PANEL = axes.Panel(56, 34, 352, 330)
-_STRIP = axes.Panel(56, 342, 352, 424)
+_PANEL = axes.Panel(56, 24, 352, 320)
+_STRIP = axes.Panel(56, 332, 352, 414)
 _KEY = 372.0
 
 
@@ -32,7 +32,7 @@ def draw(calibration: tree.Calibration, bins: Sequence[tree.RiskBin], setting: S
     strip = any(one.events or one.non_events for one in bins)
     panel = _PANEL
     bottom = _STRIP.bottom if strip else panel.bottom
-    canvas = Canvas(_KEY + 158, bottom + 42)
+    canvas = Canvas(_KEY + 158, bottom)
     reach = [0.01]
     for one in groups:
         reach += [value for value in (one.mean_risk, one.proportion, one.upper) if value is not None]
@@ -47,7 +47,10 @@ def draw(calibration: tree.Calibration, bins: Sequence[tree.RiskBin], setting: S
         axes.Panel(panel.left, panel.top, panel.right, bottom),
         across,
         setting.say("calibration.fitted"),
+        grid=True,
     )
+    if strip:
+        canvas.line((panel.left, panel.bottom), (panel.right, panel.bottom), "axis")
     canvas.line((panel.left, panel.bottom), (panel.right, panel.top), "outline", stroke_dasharray="4 3")
     curves.band(canvas, curve, across, upward)
     curves.line(canvas, curve, across, upward)
@@ -59,7 +62,7 @@ def draw(calibration: tree.Calibration, bins: Sequence[tree.RiskBin], setting: S
             canvas.line((x, upward.held(one.lower)), (x, upward.held(one.upper)), "rule", stroke_width=1.1)
         canvas.path(marks.circle((x, upward.held(one.proportion)), 3.4), "point", stroke_width=1.4)
     if strip:
-        risk_distribution.mirrored(canvas, _STRIP, across, bins, setting)
+        risk_distribution.mirrored(canvas, _STRIP, across, bins, setting, labels=_KEY)
     _key(canvas, setting, bool(groups), bool(curve))
 
     numbers = setting.words.numbers
@@ -67,7 +70,7 @@ def draw(calibration: tree.Calibration, bins: Sequence[tree.RiskBin], setting: S
         "groups": [
             (
                 numbers.percent(100 * (one.mean_risk or 0.0)),
-                numbers.percent(100 * (one.proportion or 0.0), one.n),
+                setting.share(one.observed, one.n),
             )
             for one in groups
         ],

@@ -7,6 +7,7 @@ import re
 from dataclasses import dataclass
 from typing import Any
 
+from fourfold.report.figures.canvas import clean
 from fourfold.report.words import Words
 from fourfold.results import tree
 
@@ -65,13 +66,21 @@ class Setting:
 
     def say(self, key: str, **values: Any) -> str:
         """Give the text at ``key`` of figures.yaml, told the words of the design and the confidence."""
-        return self.words.say(
+        said = self.words.say(
             f"figures.{key}",
             design=self.words.entry(f"figures.designs.{self.design}"),
             outcome=self.outcome,
             confidence=f"{self.confidence:g}",
             **values,
         )
+        return clean(said)
+
+    def share(self, count: int | None, of: int | None) -> str:
+        """Write a share of counted people: in percent, or as counts where they are too few for it."""
+        numbers = self.words.numbers
+        if count is None or not of:
+            return numbers.count(None, "derived")
+        return numbers.percent(100 * count / of, of) or self.say("few", n=count, of=of)
 
 
 def slug(*names: str) -> str:

@@ -2,18 +2,23 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
+
 from fourfold.report.figures import lettering
 from fourfold.report.figures.canvas import SIZE, Canvas, Point
 from fourfold.report.figures.figure import Figure, Setting
 from fourfold.report.figures.marks import arrow_head
 from fourfold.results import tree
 
-_WIDTH = 620.0
+_WIDTH = 640.0
 _MAIN = 220.0
-_ASIDE = 300.0
+_ASIDE = 330.0
 _PAD = 10.0
 _GAP = 26.0
 _MOST = 24
+
+Line = tuple[str, str]
+"""Words, and the number that belongs to them ("" for none)."""
 
 
 def draw(participants: tree.Participants, setting: Setting) -> Figure:
@@ -24,24 +29,24 @@ def draw(participants: tree.Participants, setting: Setting) -> Figure:
         return numbers.count(getattr(participants, field), participants.hidden.get(field))
 
     leaving = [
-        setting.say("flow.excluded", reason=exclusion.reason, n=_left(exclusion, setting))
-        for exclusion in participants.exclusions[:_MOST]
+        (exclusion.reason, numbers.count(exclusion.count, exclusion.hidden.get("count")))
+        for exclusion in participants.exclusions
     ]
-    if len(participants.exclusions) > _MOST:
-        leaving.append(setting.say("flow.more", n=len(participants.exclusions) - _MOST))
-    values = {
-        name: count(name) for name in ("read", "eligible", "incomplete", "analysed", "events", "non_events")
-    }
+    fields = ("read", "eligible", "incomplete", "analysed", "events", "non_events")
+    values = {field: count(field) for field in fields}
 
-    plan = _Column()
-    plan.main(setting.say("flow.read"), values["read"])
+    column = _Column()
+    column.main(setting.say("flow.read"), values["read"])
     if leaving:
-        plan.aside(setting.say("flow.excluded_heading"), leaving)
-        plan.main(setting.say("flow.eligible"), values["eligible"])
+        shown: list[Line] = leaving[:_MOST]
+        if len(leaving) > _MOST:
+            shown = [*shown, (setting.say("flow.more", n=len(leaving) - _MOST), "")]
+        column.aside(setting.say("flow.excluded_heading"), shown)
+        column.main(setting.say("flow.eligible"), values["eligible"])
     if participants.incomplete != 0:
-        plan.aside("", [setting.say("flow.incomplete", n=values["incomplete"])])
-    plan.main(setting.say("flow.analysed"), values["analysed"])
-    plan.split(
+        column.aside("", [(setting.say("flow.incomplete"), values["incomplete"])])
+    column.main(setting.say("flow.analysed"), values["analysed"])
+    column.split(
         (setting.say("flow.events"), values["events"]),
         (setting.say("flow.non_events"), values["non_events"]),
     )
@@ -49,14 +54,10 @@ def draw(participants: tree.Participants, setting: Setting) -> Figure:
     return Figure(
         "participant-flow",
         setting.say("flow.title"),
-        plan.finished().svg(alternative),
+        column.finished().svg(alternative),
         alternative,
-        setting.say("flow.caption", **values),
+        setting.say("flow.caption", leaving=leaving),
     )
-
-
-def _left(exclusion: tree.Exclusion, setting: Setting) -> str:
-    return setting.words.numbers.count(exclusion.count, exclusion.hidden.get("count"))
 
 
 class _Column:
@@ -67,40 +68,35 @@ class _Column:
         self._y = 1.0
         self._stem: float | None = None
 
-    def main(self, label: str, number: str) -> None:
+    def main(self, label: str, count: str) -> None:
         """Add a box of the main column."""
         if self._stem is not None:
             self._y += _GAP
             _down(self._canvas, 1.0 + _MAIN / 2, self._stem, self._y)
-        self._y += _box(self._canvas, (1.0, self._y), _MAIN, label, [number], big=True)
+        self._y += _box(self._canvas, (1.0, self._y), _MAIN, label, count)
         self._stem = self._y
 
-    def aside(self, label: str, lines: list[str]) -> None:
+    def aside(self, label: str, lines: Sequence[Line]) -> None:
         """Add a box of those who leave, at the right of the stem."""
-        top = self._y + 12
-        height = _box(self._canvas, (_WIDTH - _ASIDE - 1, top), _ASIDE, label, lines, big=False)
+        top, left = self._y + 12, _WIDTH - _ASIDE - 1
+        height = _list(self._canvas, (left, top), _ASIDE, label, lines)
         middle = top + height / 2
-        stem = 1.0 + _MAIN / 2
-        end = _WIDTH - _ASIDE - 1
-        self._canvas.line((stem, middle), (end - 4, middle), "axis")
-        self._canvas.path(arrow_head((end, middle), 1), "muted")
+        self._canvas.line((1.0 + _MAIN / 2, middle), (left - 4, middle), "axis")
+        self._canvas.path(arrow_head((left, middle), 1), "muted")
         self._y = top + height - 12
 
-    def split(self, first: tuple[str, str], second: tuple[str, str]) -> None:
+    def split(self, first: Line, second: Line) -> None:
         """Add the two boxes at the end of the column, side by side."""
-        assert self._stem is not None
-        stem, start = 1.0 + _MAIN / 2, self._stem
+        stem, bar, top = 1.0 + _MAIN / 2, self._y + 13, self._y + _GAP
+        self._canvas.line((stem, self._y), (stem, bar), "axis")
         wide = _MAIN / 2 + 40
         lefts = (1.0, 1.0 + wide + 14)
-        bar = start + 13
-        top = start + _GAP
-        self._canvas.line((stem, start), (stem, bar), "axis")
         centres = [left + wide / 2 for left in lefts]
         self._canvas.line((centres[0], bar), (centres[1], bar), "axis")
         height = 0.0
-        for left, centre, (label, number) in zip(lefts, centres, (first, second), strict=True):
+        for left, centre, (label, count) in zip(lefts, centres, (first, second), strict=True):
             _down(self._canvas, centre, bar, top)
-            height = max(height, _box(self._canvas, (left, top), wide, label, [number], big=True))
+            height = max(height, _box(self._canvas, (left, top), wide, label, count))
         self._y = top + height
 
     def finished(self) -> Canvas:
@@ -114,16 +110,36 @@ def _down(canvas: Canvas, x: float, start: float, end: float) -> None:
     canvas.path(f"M{x:g} {end:g}l-3-5.2h6z", "muted")
 
 
-def _box(canvas: Canvas, corner: Point, width: float, label: str, lines: list[str], *, big: bool) -> float:
-    """Draw a box with a label and lines, and give its height, px."""
+def _box(canvas: Canvas, corner: Point, width: float, label: str, count: str) -> float:
+    """Draw a box with a label and its count beneath, and give its height, px."""
     x, y = corner
-    room = width - 2 * _PAD
-    blocks = [lettering.block(label, room, most=2)] if label else []
-    blocks += [lettering.block(line, room, most=3, bold=big) for line in lines]
-    height = sum(one.height for one in blocks) + 2 * _PAD - 3
+    words = lettering.block(label, width - 2 * _PAD)
+    figure = lettering.block(count, width - 2 * _PAD, bold=True)
+    height = words.height + figure.height + 2 * _PAD - 3
     canvas.rect(x, y, width, height, "box")
     baseline = y + _PAD + SIZE * 0.8
-    for index, one in enumerate(blocks):
-        one.write(canvas, (x + _PAD, baseline), "muted" if label and index == 0 else "ink")
-        baseline += one.height
+    words.write(canvas, (x + _PAD, baseline), "muted")
+    figure.write(canvas, (x + _PAD, baseline + words.height))
+    return height
+
+
+def _list(canvas: Canvas, corner: Point, width: float, label: str, lines: Sequence[Line]) -> float:
+    """Draw a box of lines whose counts stand in a column at the right; give its height, px."""
+    x, y = corner
+    widest = max(lettering.width(count, bold=True) for _, count in lines)
+    room = width - 2 * _PAD - widest - 12
+    written = [(lettering.block(words, room, most=3), count) for words, count in lines]
+    heading = lettering.block(label, width - 2 * _PAD) if label else None
+    height = sum(words.height for words, _ in written) + 2 * _PAD - 3
+    height += heading.height + 2 if heading else 0.0
+    canvas.rect(x, y, width, height, "box")
+    baseline = y + _PAD + SIZE * 0.8
+    if heading:
+        heading.write(canvas, (x + _PAD, baseline), "muted")
+        baseline += heading.height + 2
+    for words, count in written:
+        words.write(canvas, (x + _PAD, baseline))
+        if count:
+            canvas.text((x + width - _PAD, baseline), count, anchor="end", bold=True)
+        baseline += words.height
     return height

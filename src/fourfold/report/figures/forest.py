@@ -59,7 +59,7 @@ def draw(
     bottom = _TOP + pitch * len(rows) + 6
     panel = axes.Panel(_LABELS + 8, _TOP, _WIDTH - _NUMBERS - 12, bottom)
     scale = _axis([row for row in rows if row.adjusted], panel)
-    canvas = Canvas(_WIDTH, bottom + 44)
+    canvas = Canvas(_WIDTH, bottom)
     has_crude = any(row.crude and row.crude.odds_ratio is not None for row in rows)
     _headings(canvas, setting, panel, has_crude)
     axes.below(canvas, panel, scale, setting.say("forest.axis"), grid=True)
@@ -70,7 +70,7 @@ def draw(
 
     told = [row for row in rows if row.adjusted is not None]
     values = {
-        "rows": [f"{_full_label(row, setting)} {_estimate_words(row.adjusted, setting)}" for row in told],
+        "rows": [f"{_full_label(row, setting)}: {_estimate_words(row.adjusted, setting)}" for row in told],
         "crude": has_crude,
         "left_out": sum(row.kind == "estimate" for row in every[MOST_ROWS:]),
         "single": len(told) == 1,
@@ -154,13 +154,14 @@ def _axis(rows: Sequence[Row], panel: axes.Panel) -> Scale:
             continue
         centres += [v for v in (one.odds_ratio, crude.odds_ratio if crude else None) if _drawable(v)]
         bounds = [v for v in (one.lower, one.upper) if _drawable(v)]
+        if crude is not None and crude.odds_ratio is not None:
+            limits += [v for v in (crude.lower, crude.upper) if _drawable(v)]
         if one.odds_ratio is None:
             centres += bounds
         limits += bounds
     low, high = min(centres), max(centres)
-    inner = [v for v in limits if v is not None]
-    low = max(min([low, *inner]), low / _BEYOND)
-    high = min(max([high, *inner]), high * _BEYOND)
+    low = max(min([low, *limits]), low / _BEYOND)
+    high = min(max([high, *limits]), high * _BEYOND)
     low, high = min(low, 0.8), max(high, 1.25)
     room = (high / low) ** 0.05
     return scales.log(low / room, high * room, panel.left, panel.right)
@@ -168,6 +169,10 @@ def _axis(rows: Sequence[Row], panel: axes.Panel) -> Scale:
 
 def _drawable(value: float | None) -> TypeGuard[float]:
     return value is not None and math.isfinite(value) and value > 0
+
+
+def _finite(value: float | None) -> float | None:
+    return value if value is not None and math.isfinite(value) else None
 
 
 def _headings(canvas: Canvas, setting: Setting, panel: axes.Panel, has_crude: bool) -> None:
@@ -249,9 +254,8 @@ def _estimate_words(one: tree.Estimate | None, setting: Setting) -> str:
     numbers = setting.words.numbers
     note = one.note or ""
     if one.odds_ratio is not None:
-        return (
-            f"{numbers.odds_ratio(one.odds_ratio)} ({numbers.interval(one.lower, one.upper, one.odds_ratio)})"
-        )
+        limits = numbers.interval(_finite(one.lower), _finite(one.upper), one.odds_ratio)
+        return f"{numbers.odds_ratio(one.odds_ratio)} ({limits})"
     if note == "separated upward" and one.lower is not None:
         return setting.say("forest.at_least", bound=numbers.odds_ratio(one.lower))
     if note == "separated downward" and one.upper is not None:

@@ -7,7 +7,7 @@ from fourfold.report.figures.canvas import SMALL, Canvas, number
 from fourfold.report.figures.figure import Figure, Setting, slug
 from fourfold.results import tree
 
-_PANEL = axes.Panel(56, 34, 500, 284)
+_PANEL = axes.Panel(56, 24, 520, 274)
 _BEYOND = 4.0
 """The band may stretch the axis to this many times the curve's own range, not further."""
 
@@ -18,7 +18,7 @@ def draw(one: tree.OddsRatioCurve, setting: Setting) -> Figure | None:
     if len(curve) < 2:
         return None
     panel = _PANEL
-    canvas = Canvas(panel.right + 20, panel.bottom + 58)
+    canvas = Canvas(panel.right + 20, panel.bottom)
     across = scales.linear(curve[0].x, curve[-1].x, panel.left, panel.right, count=7, widen=False)
     low, high = min([1.0, *(p.y for p in curve)]), max([1.0, *(p.y for p in curve)])
     lowers = [p.lower for p in curve if p.lower is not None and p.lower > 0]
@@ -61,12 +61,16 @@ def _reference(
     canvas: Canvas, setting: Setting, one: tree.OddsRatioCurve, place: tuple[float, float], panel: axes.Panel
 ) -> None:
     x, y = place
-    canvas.circle((x, y), 4.0, "accent-hollow", stroke_width=1.8)
     words = setting.say("odds_ratio_curve.reference", value=scales.plain(one.reference), unit=one.unit or "")
-    half = lettering.width(words, SMALL) / 2
-    centre = min(max(x, panel.left + half + 4), panel.right - half - 4)
-    canvas.path(f"M{number(x)} {number(y + 4)}V{number(panel.bottom)}", "outline", stroke_dasharray="2 2")
-    canvas.text((centre, panel.bottom - 12), words, "muted", anchor="middle", size=SMALL)
+    canvas.path(f"M{number(x)} {number(panel.top)}V{number(panel.bottom)}", "outline", stroke_dasharray="2 2")
+    canvas.circle((x, y), 4.0, "accent-hollow", stroke_width=1.8)
+    # The words stand at the end of the dotted line that is farther from the curve, which is at 1 here.
+    upper = y - panel.top > panel.bottom - y
+    height = panel.top + 10 if upper else panel.bottom - 16
+    right = x + 6 + lettering.width(words, SMALL) < panel.right
+    canvas.text(
+        (x + 6 if right else x - 6, height), words, "muted", anchor="start" if right else "end", size=SMALL
+    )
 
 
 def told(one: tree.OddsRatioCurve, curve: list[tree.CurvePoint], setting: Setting) -> dict[str, object]:

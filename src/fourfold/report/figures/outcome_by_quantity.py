@@ -10,7 +10,7 @@ from fourfold.report.figures.figure import Figure, Setting, slug
 from fourfold.report.figures.odds_ratio_curve import axis_title, digits_for
 from fourfold.results import tree
 
-_PANEL = axes.Panel(52, 34, 500, 272)
+_PANEL = axes.Panel(52, 24, 520, 264)
 _MOST_PEOPLE = 400
 
 
@@ -22,7 +22,7 @@ def draw(one: tree.OutcomeByQuantity, setting: Setting) -> Figure | None:
         return None
     people = curves.thinned(one.points, _MOST_PEOPLE)
     panel = _PANEL
-    canvas = Canvas(panel.right + 20, panel.bottom + 58)
+    canvas = Canvas(panel.right + 20, panel.bottom)
     places = [point.x for point in curve] + [each.mean for each in bins if each.mean is not None]
     places += [person.x for person in people]
     across = scales.linear(min(places), max(places), panel.left, panel.right, count=7, widen=not curve)
@@ -57,8 +57,7 @@ def draw(one: tree.OutcomeByQuantity, setting: Setting) -> Figure | None:
             (numbers.number(point.x, digits), numbers.percent(100 * point.y)) for point in places_told
         ],
         "bins": [
-            (numbers.number(each.mean, digits), numbers.percent(100 * (each.proportion or 0.0), each.total))
-            for each in bins
+            (numbers.number(each.mean, digits), setting.share(each.events, each.total)) for each in bins
         ],
         "hidden": any(each.hidden for each in one.bins),
         "people": len(people),
@@ -97,7 +96,7 @@ def _people(
 def _key(canvas: Canvas, label: str, groups: Sequence[tuple[str, int]], panel: axes.Panel) -> None:
     """Write the groups' shapes in a row above the panel, from the right."""
     x = panel.right
-    y = panel.top - 14
+    y = panel.top - 10
     for name, index in reversed(groups[:4]):
         words = lettering.block(name, 84, most=1, size=SMALL)
         x -= words.width

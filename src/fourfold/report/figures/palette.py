@@ -111,18 +111,24 @@ def css() -> str:
     asks for dark on a screen and where the root carries ``data-theme="dark"``; ``data-theme="light"``
     keeps light. Print is always light.
     """
-    light = _properties(LIGHT)
     dark = _properties(DARK)
-    rules = [
-        f":root{{{light}}}",
-        f'@media screen and (prefers-color-scheme:dark){{:root:not([data-theme="light"]){{{dark}}}}}',
-        f'@media screen{{:root[data-theme="dark"]{{{dark}}}}}',
-    ]
+    restyled = []
     for style, paints in STYLES.items():
         body = ";".join(f"{name}:var(--figure-{value})" for name, value in paints.items() if value in LIGHT)
         if body:
-            rules.append(f"svg.{PREFIX}figure .{PREFIX}{style}{{{body}}}")
-    return "\n".join(rules) + "\n"
+            restyled.append(f"svg.{PREFIX}figure .{PREFIX}{style}{{{body}}}")
+    # A renderer for print skips the whole screen block and keeps the presentation attributes.
+    return "\n".join(
+        [
+            f":root{{{_properties(LIGHT)}}}",
+            "@media screen{",
+            f'@media (prefers-color-scheme:dark){{:root:not([data-theme="light"]){{{dark}}}}}',
+            f':root[data-theme="dark"]{{{dark}}}',
+            *restyled,
+            "}",
+            "",
+        ]
+    )
 
 
 def _properties(colours: Mapping[str, str]) -> str:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Sequence
 
 from fourfold.report.figures import axes, lettering, scales
@@ -18,11 +19,11 @@ def draw(bins: Sequence[tree.RiskBin], setting: Setting) -> Figure | None:
     """Draw the distribution; None where no bin has a count that may be shown."""
     if not any(one.events or one.non_events for one in bins):
         return None
-    canvas = Canvas(600, 252)
-    panel = axes.Panel(56, 20, 520, 208)
+    canvas = Canvas(640, 208)
+    panel = axes.Panel(44, 10, 508, 196)
     last = max(one.upper for one in bins if _filled(one))
     across = scales.probability(0, last, panel.left, panel.right, count=6)
-    mirrored(canvas, panel, across, bins, setting)
+    mirrored(canvas, panel, across, bins, setting, labels=panel.right + 14)
     axes.below(canvas, panel, across, setting.say("risk_distribution.axis"))
     alternative = setting.say("risk_distribution.alt", **told(bins, setting))
     return Figure(
@@ -35,14 +36,23 @@ def draw(bins: Sequence[tree.RiskBin], setting: Setting) -> Figure | None:
 
 
 def mirrored(
-    canvas: Canvas, panel: axes.Panel, across: Scale, bins: Sequence[tree.RiskBin], setting: Setting
+    canvas: Canvas,
+    panel: axes.Panel,
+    across: Scale,
+    bins: Sequence[tree.RiskBin],
+    setting: Setting,
+    *,
+    labels: float,
 ) -> None:
-    """Draw the two mirrored histograms into a panel, each side on its own scale of counts."""
+    """Draw the two mirrored histograms into a panel, each side on its own scale of counts.
+
+    ``labels`` is where the words right of the panel begin, px.
+    """
     middle = panel.middle[1]
     for field, edge, style in (("events", panel.top, "event"), ("non_events", panel.bottom, "area")):
         counts = [getattr(one, field) for one in bins]
         most = max((count for count in counts if count), default=0)
-        scale = scales.linear(0, most or 1, middle, edge, count=1)
+        scale = scales.linear(0, most or 1, middle, edge, count=4)
         data = ""
         for one, count in zip(bins, counts, strict=True):
             if count and across.holds(one.lower):
@@ -56,10 +66,8 @@ def mirrored(
             canvas.path(f"M{number(panel.left)} {number(edge)}h-4", "axis")
             y = scale(top.value) + SMALL * 0.35
             canvas.text((panel.left - 7, y), top.label, "muted", anchor="end", size=SMALL)
-        label = lettering.block(setting.say(f"risk_distribution.{field}"), 76, most=2, size=SMALL)
-        label.write_centred(
-            canvas, (panel.right + 8, (middle + edge) / 2), "event" if field == "events" else "muted"
-        )
+        label = lettering.block(setting.say(f"risk_distribution.{field}"), 116, most=2, size=SMALL)
+        label.write_centred(canvas, (labels, (middle + edge) / 2), "event" if field == "events" else "muted")
     canvas.text((panel.left - 7, middle + SMALL * 0.35), "0", "muted", anchor="end", size=SMALL)
     canvas.path(f"M{number(panel.left - 4)} {number(middle)}H{number(panel.right)}", "axis")
     canvas.path(f"M{number(panel.left)} {number(panel.top)}V{number(panel.bottom)}", "axis")
@@ -68,6 +76,13 @@ def mirrored(
 def told(bins: Sequence[tree.RiskBin], setting: Setting) -> dict[str, object]:
     """Give what an alternative text says of the bins: the fullest one of each side and the range."""
     numbers = setting.words.numbers
+    # Edges are told apart: decimals go by the width of a bin.
+    width = 100 * min((one.upper - one.lower for one in bins if one.upper > one.lower), default=0.01)
+    digits = max(0, math.ceil(-math.log10(width)) + 1)
+
+    def edge(value: float) -> str:
+        return numbers.number(100 * value, digits) + "%"
+
     values: dict[str, object] = {"hidden": any(one.hidden for one in bins)}
     for field in ("events", "non_events"):
         shown = [one for one in bins if getattr(one, field)]
@@ -77,10 +92,10 @@ def told(bins: Sequence[tree.RiskBin], setting: Setting) -> dict[str, object]:
             if fullest is None
             else {
                 "count": numbers.count(getattr(fullest, field)),
-                "low": numbers.percent(100 * fullest.lower),
-                "high": numbers.percent(100 * fullest.upper),
-                "first": numbers.percent(100 * shown[0].lower),
-                "last": numbers.percent(100 * shown[-1].upper),
+                "low": edge(fullest.lower),
+                "high": edge(fullest.upper),
+                "first": edge(shown[0].lower),
+                "last": edge(shown[-1].upper),
             }
         )
     return values

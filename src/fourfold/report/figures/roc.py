@@ -2,13 +2,13 @@
 
 from __future__ import annotations
 
-from fourfold.report.figures import axes, lettering, scales
+from fourfold.report.figures import axes, scales
 from fourfold.report.figures.canvas import Canvas, Point, polyline
 from fourfold.report.figures.curves import thinned
 from fourfold.report.figures.figure import Figure, Setting
 from fourfold.results import tree
 
-_PANEL = axes.Panel(44, 34, 304, 294)
+_PANEL = axes.Panel(44, 24, 314, 294)
 _LANDMARKS = (0.90, 0.75, 0.50)
 
 
@@ -17,7 +17,7 @@ def draw(discrimination: tree.Discrimination, setting: Setting) -> Figure | None
     curve = discrimination.curve
     if len(curve) < 2:
         return None
-    canvas = Canvas(_PANEL.right + 12, _PANEL.bottom + 42)
+    canvas = Canvas(_PANEL.right + 18, _PANEL.bottom)
     across = scales.probability(0, 1, _PANEL.left, _PANEL.right)
     upward = scales.probability(0, 1, _PANEL.bottom, _PANEL.top)
     axes.beside(canvas, _PANEL, upward, setting.say("roc.sensitivity"))
@@ -40,14 +40,15 @@ def draw(discrimination: tree.Discrimination, setting: Setting) -> Figure | None
         "area": area,
         "interval": interval,
         "landmarks": [
-            (numbers.percent(100 * at), numbers.percent(100 * reached))
+            (f"{scales.plain(100 * at)}%", numbers.percent(100 * reached))
             for at in _LANDMARKS
             if (reached := _reached(curve, at)) is not None
         ],
     }
     if area:
-        words = lettering.block(setting.say("roc.label", **values), 120, most=3)
-        words.write(canvas, (_PANEL.right - 10, _PANEL.bottom - 10 - words.height + words.size), "ink", "end")
+        place = _PANEL.right - 8, _PANEL.bottom - 27
+        canvas.text(place, setting.say("roc.label", **values), "muted", anchor="end")
+        canvas.text((place[0], place[1] + 15), setting.say("roc.area", **values), bold=True, anchor="end")
     alternative = setting.say("roc.alt", **values)
     return Figure(
         "roc",

@@ -67,12 +67,10 @@ def linear(low: float, high: float, start: float, end: float, *, count: int = 5,
     if widen:
         low, high = math.floor(low / step + 1e-9) * step, math.ceil(high / step - 1e-9) * step
     values = _multiples(low, high, step)
-    return Scale(low, high, start, end, tuple(Tick(value, plain(value, step)) for value in values))
+    return Scale(low, high, start, end, _labelled(values, step))
 
 
-def probability(
-    low: float, high: float, start: float, end: float, *, count: int = 5, percent_sign: bool = True
-) -> Scale:
+def probability(low: float, high: float, start: float, end: float, *, count: int = 5) -> Scale:
     """Make a scale of probabilities labelled in percent, its ends at ticks within 0 and 1.
 
     Parameters
@@ -84,8 +82,7 @@ def probability(
     step = _step((high - low) / max(count, 1))
     low = max(0.0, math.floor(low / step + 1e-9) * step)
     high = min(1.0, math.ceil(high / step - 1e-9) * step)
-    sign = "%" if percent_sign else ""
-    ticks = tuple(Tick(value, plain(100 * value, 100 * step) + sign) for value in _multiples(low, high, step))
+    ticks = tuple(Tick(value, plain(100 * value, 100 * step) + "%") for value in _multiples(low, high, step))
     return Scale(low, high, start, end, ticks)
 
 
@@ -103,11 +100,20 @@ def log(low: float, high: float, start: float, end: float, *, most: int = 9) -> 
         ticks = [value for value in series if low * (1 - 1e-9) <= value <= high * (1 + 1e-9)]
         if len(ticks) <= most:
             break
-    return Scale(low, high, start, end, tuple(Tick(value, plain(value)) for value in ticks), log=True)
+    return Scale(low, high, start, end, _labelled(ticks), log=True)
 
 
-def plain(value: float, step: float | None = None) -> str:
-    """Write a round number with as many decimals as ``step`` needs, and a true minus sign."""
+def _labelled(values: Sequence[float], step: float | None = None) -> tuple[Tick, ...]:
+    # Thousands are set apart on the whole axis or not at all; below 10,000 they may be years.
+    grouped = any(abs(value) >= 10_000 for value in values)
+    return tuple(Tick(value, plain(value, step, grouped)) for value in values)
+
+
+def plain(value: float, step: float | None = None, grouped: bool | None = None) -> str:
+    """Write a round number with as many decimals as ``step`` needs, and a true minus sign.
+
+    Thousands are set apart where ``grouped``; by default from 10,000 on.
+    """
     if value == 0:
         return "0"
     size = abs(value)
@@ -116,7 +122,8 @@ def plain(value: float, step: float | None = None) -> str:
         text = text.replace("-", MINUS)
     else:
         places = _places(step if step is not None else size)
-        text = f"{size:,.{places}f}" if size >= 10_000 else f"{size:.{places}f}"
+        apart = size >= 10_000 if grouped is None else grouped
+        text = f"{size:,.{places}f}" if apart else f"{size:.{places}f}"
     return (MINUS if value < 0 else "") + text
 
 

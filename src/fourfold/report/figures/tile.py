@@ -58,7 +58,6 @@ def draw(table: tree.FourfoldTable, setting: Setting) -> Figure | None:
     _side(canvas, setting, table.exposed_label, (a, b), where.events_exposed, risks, left=True)
     _side(canvas, setting, table.unexposed_label, (c, d), where.events_unexposed, risks, left=False)
 
-    numbers = setting.words.numbers
     values = {
         "label": table.label,
         "exposed": table.exposed_label,
@@ -68,8 +67,8 @@ def draw(table: tree.FourfoldTable, setting: Setting) -> Figure | None:
         "c": c,
         "d": d,
         "shares": risks and a + b > 0 and c + d > 0,
-        "share_exposed": numbers.percent(100 * a / (a + b), a + b) if a + b else "",
-        "share_unexposed": numbers.percent(100 * c / (c + d), c + d) if c + d else "",
+        "share_exposed": setting.share(a, a + b),
+        "share_unexposed": setting.share(c, c + d),
     }
     alternative = setting.say("tile.alt", **values)
     return Figure(
@@ -116,15 +115,15 @@ def _square(canvas: Canvas, where: Cuts, left: float, top: float, side: float) -
     for x, width, share in parts:
         if share is not None:
             canvas.rect(x, top + side * (1 - share), width, side * share, "event")
-    canvas.rect(left, top, side, side, "outline")
-    # The cuts lie on the borders and take nothing from the areas but their own width.
+    # The cuts lie on the borders; one that would hide a thin area is left out.
     thick = 2.0 if side > 100 else 1.0
     for x, width, share in parts:
-        if share is not None and 0 < share < 1:
+        if share is not None and min(share, 1 - share) * side > 2 * thick:
             y = top + side * (1 - share)
             canvas.line((x, y), (x + width, y), "cut", stroke_width=thick)
-    if 0 < where.exposed < 1:
+    if min(where.exposed, 1 - where.exposed) * side > 2 * thick:
         canvas.line((upright, top), (upright, top + side), "cut", stroke_width=thick)
+    canvas.rect(left, top, side, side, "outline")
 
 
 def _side(
@@ -154,8 +153,8 @@ def _side(
     upper = min(max(upper, _TOP + 10), lower - 40)
     canvas.text((x, upper + 4), setting.say("tile.others", n=others), anchor=anchor)
     canvas.text((x, lower - 2), setting.say("tile.events", n=events), "event", anchor=anchor, bold=True)
-    if risks:
-        percent = setting.words.numbers.percent(100 * share, events + others)
+    percent = setting.words.numbers.percent(100 * share, events + others)
+    if risks and percent:
         canvas.text(
             (x, lower + 12), setting.say("tile.risk", share=percent), "muted", anchor=anchor, size=SMALL
         )
