@@ -79,6 +79,7 @@ def draw(calibration: tree.Calibration, bins: Sequence[tree.RiskBin], setting: S
         "method": calibration.curve_method,
         "curve": len(curve) > 1,
         "strip": strip,
+        "dotted": strip and any(one.hidden for one in bins),
     }
     alternative = setting.say("calibration.alt", **values)
     return Figure(

@@ -14,7 +14,8 @@ from contextlib import contextmanager
 
 from fourfold.report.figures import palette
 
-FAMILY = "IBM Plex Sans,sans-serif"
+FAMILY = "IBM Plex Sans,IBM Plex Sans Extended,IBM Plex Sans Greek,IBM Plex Sans Signs,sans-serif"
+"""Families as an attribute of SVG: no quotes, no spaces after commas, which PDF renderers take literally."""
 SIZE = 11.0
 """Size of the words in a figure, in px at the figure's own width; 8.25 pt in print."""
 SMALL = 10.0

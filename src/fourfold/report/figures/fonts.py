@@ -3,20 +3,19 @@
 Source Serif 4 sets the text, IBM Plex Sans the tables and figures (both SIL Open Font Licence; the
 licences lie beside the files). Each family comes in parts by script: only the parts whose
 characters occur in a text need to travel with it.
+
+Each part goes by a family name of its own, and the stacks list the parts in order: a PDF renderer
+that tells fonts apart by name, weight and style alone would otherwise print the glyphs of one part
+with the numbers of another.
 """
 
 from __future__ import annotations
 
 import base64
+from collections.abc import Sequence
 from dataclasses import dataclass
 
 from fourfold.report import assets
-
-SERIF_STACK = '"Source Serif 4","IBM Plex Sans",Georgia,serif'
-"""Families for text; Plex stands in for the mathematical signs that the serif lacks."""
-
-SANS_STACK = '"IBM Plex Sans","Helvetica Neue",Arial,sans-serif'
-"""Families for tables and figures."""
 
 # Ranges of the parts as their publishers cut them.
 _RANGES = {
@@ -39,11 +38,27 @@ class Part:
     script: str
 
     @property
+    def name(self) -> str:
+        """Family name of the part in style sheets."""
+        return self.family + _SUFFIXES[self.script]
+
+    @property
     def file(self) -> str:
         """File name under templates/fonts."""
+        return self._file(self.script)
+
+    @property
+    def print_file(self) -> str:
+        """File for a PDF renderer, which sets the space after a sign in the sign's own font.
+
+        The part of signs has no space and would print an empty box there; the whole font has one.
+        """
+        return self._file("whole" if self.script == "symbols" else self.script)
+
+    def _file(self, script: str) -> str:
         family = self.family.lower().replace(" ", "-")
         italic = "-italic" if self.style == "italic" else ""
-        return f"{family}-{self.script}-{self.weight}{italic}.woff2"
+        return f"{family}-{script}-{self.weight}{italic}.woff2"
 
     def serves(self, text: str) -> bool:
         """Say whether any character of ``text`` lies in this part."""
@@ -59,6 +74,19 @@ class Part:
 
 
 SANS, SERIF = "IBM Plex Sans", "Source Serif 4"
+_SUFFIXES = {"latin": "", "latin-ext": " Extended", "greek": " Greek", "symbols": " Signs"}
+
+SERIF_FAMILIES = (SERIF, f"{SERIF} Extended", f"{SERIF} Greek", f"{SANS} Signs", "Georgia", "serif")
+"""Families for text, in order; Plex lends the mathematical signs that the serif lacks."""
+
+SANS_FAMILIES = (SANS, f"{SANS} Extended", f"{SANS} Greek", f"{SANS} Signs", "Arial", "sans-serif")
+"""Families for tables and figures, in order."""
+
+
+def stack(families: Sequence[str]) -> str:
+    """Write families as the value of ``font-family`` in a style sheet."""
+    return ",".join(f'"{family}"' if " " in family else family for family in families)
+
 
 PARTS: tuple[Part, ...] = (
     Part(SERIF, 400, "normal", "latin"),
@@ -69,8 +97,10 @@ PARTS: tuple[Part, ...] = (
     Part(SANS, 400, "normal", "symbols"),
     Part(SANS, 600, "normal", "symbols"),
     Part(SERIF, 400, "normal", "greek"),
+    Part(SERIF, 600, "normal", "greek"),
     Part(SERIF, 400, "italic", "greek"),
     Part(SANS, 400, "normal", "greek"),
+    Part(SANS, 600, "normal", "greek"),
     Part(SERIF, 400, "normal", "latin-ext"),
     Part(SERIF, 600, "normal", "latin-ext"),
     Part(SERIF, 400, "italic", "latin-ext"),
@@ -86,7 +116,8 @@ def css(embed: bool = True, text: str | None = None) -> str:
     Parameters
     ----------
     embed : bool
-        Put the files into the rules as base64 data; else name them by ``file:`` address.
+        Put the files into the rules as base64 data, for a page that stands alone; else name them by
+        ``file:`` address, for a PDF renderer.
     text : str, optional
         Everything the page says. Parts of scripts that do not occur in it are left out; None
         keeps all parts.
@@ -96,13 +127,13 @@ def css(embed: bool = True, text: str | None = None) -> str:
     for part in PARTS:
         if text is not None and not part.serves(text):
             continue
-        path = folder / part.file
+        path = folder / (part.file if embed else part.print_file)
         if embed:
             address = "data:font/woff2;base64," + base64.b64encode(path.read_bytes()).decode("ascii")
         else:
             address = path.resolve().as_uri()
         rules.append(
-            f'@font-face{{font-family:"{part.family}";font-style:{part.style};font-weight:{part.weight};'
+            f'@font-face{{font-family:"{part.name}";font-style:{part.style};font-weight:{part.weight};'
             f'font-display:block;src:url("{address}") format("woff2");'
             f"unicode-range:{_RANGES[part.script]}}}"
         )

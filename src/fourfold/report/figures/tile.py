@@ -16,7 +16,6 @@ from fourfold.results import tree
 
 _SIDE = 196.0
 _LEFT = 150.0
-_TOP = 52.0
 
 
 @dataclass(frozen=True, slots=True)
@@ -52,20 +51,27 @@ def draw(table: tree.FourfoldTable, setting: Setting) -> Figure | None:
     if where is None or cells is None:
         return None
     a, b, c, d = cells
-    canvas = Canvas(2 * _LEFT + _SIDE, _TOP + _SIDE + 14)
-    _square(canvas, where, _LEFT, _TOP, _SIDE)
+    headings = [
+        lettering.block(label, _LEFT - 14, most=3, bold=True)
+        for label in (table.exposed_label, table.unexposed_label)
+    ]
+    top = max(heading.height for heading in headings) + 22
+    canvas = Canvas(2 * _LEFT + _SIDE, top + _SIDE + 6)
+    _square(canvas, where, _LEFT, top, _SIDE)
     risks = table.risk_exposed is not None and table.risk_unexposed is not None
-    _side(canvas, setting, table.exposed_label, (a, b), where.events_exposed, risks, left=True)
-    _side(canvas, setting, table.unexposed_label, (c, d), where.events_unexposed, risks, left=False)
+    _side(canvas, setting, headings[0], top, (a, b), where.events_exposed, risks, left=True)
+    _side(canvas, setting, headings[1], top, (c, d), where.events_unexposed, risks, left=False)
 
     values = {
         "label": table.label,
         "exposed": table.exposed_label,
         "unexposed": table.unexposed_label,
-        "a": a,
-        "b": b,
-        "c": c,
-        "d": d,
+        "cells": {
+            "a": setting.say("tile.events", n=a),
+            "b": setting.say("tile.others", n=b),
+            "c": setting.say("tile.events", n=c),
+            "d": setting.say("tile.others", n=d),
+        },
         "shares": risks and a + b > 0 and c + d > 0,
         "share_exposed": setting.share(a, a + b),
         "share_unexposed": setting.share(c, c + d),
@@ -129,7 +135,8 @@ def _square(canvas: Canvas, where: Cuts, left: float, top: float, side: float) -
 def _side(
     canvas: Canvas,
     setting: Setting,
-    label: str,
+    heading: lettering.Block,
+    top: float,
     counts: tuple[int, int],
     share: float | None,
     risks: bool,
@@ -140,17 +147,16 @@ def _side(
     events, others = counts
     x = _LEFT - 12 if left else _LEFT + _SIDE + 12
     anchor = "end" if left else "start"
-    heading = lettering.block(label, _LEFT - 14, most=2, bold=True)
-    heading.write(canvas, (x, _TOP - 22 - heading.height + heading.size * lettering.LEADING), anchor=anchor)
+    heading.write(canvas, (x, top - 22 - heading.height + heading.size * lettering.LEADING), anchor=anchor)
     total = setting.say("tile.people", n=events + others)
-    canvas.text((x, _TOP - 7), total, "muted", anchor=anchor, size=SMALL)
+    canvas.text((x, top - 7), total, "muted", anchor=anchor, size=SMALL)
     if share is None:
         return
-    upper = _TOP + _SIDE * (1 - share) / 2
-    lower = _TOP + _SIDE * (1 - share / 2)
+    upper = top + _SIDE * (1 - share) / 2
+    lower = top + _SIDE * (1 - share / 2)
     # The two labels keep clear of each other and of the square's ends, however thin their areas.
-    lower = min(max(lower, _TOP + 46), _TOP + _SIDE - 10)
-    upper = min(max(upper, _TOP + 10), lower - 40)
+    lower = min(max(lower, top + 46), top + _SIDE - 10)
+    upper = min(max(upper, top + 10), lower - 40)
     canvas.text((x, upper + 4), setting.say("tile.others", n=others), anchor=anchor)
     canvas.text((x, lower - 2), setting.say("tile.events", n=events), "event", anchor=anchor, bold=True)
     percent = setting.words.numbers.percent(100 * share, events + others)
