@@ -1,0 +1,1 @@
+"""Tables of the report, from the results tree alone."""
