@@ -1,0 +1,209 @@
+"""Maximum likelihood for the logistic model."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from fourfold.errors import EstimationError
+from fourfold.models.blocks import Blocks
+from fourfold.models.centring import Centring, centring, constant_column
+from fourfold.models.likelihood import LogLikelihood, Observed, Part
+from fourfold.models.newton import Curvature, Optimum, maximise
+
+Array = NDArray[np.float64]
+Counts = NDArray[np.int64] | NDArray[np.float64]
+
+WARM_FROM = 50_000
+"""Rows from which a fit to a part of them gives the start."""
+
+PART = 16
+"""The part is one row in so many."""
+
+ROWS_PER_COLUMN = 100
+"""Rows of the part needed for each column: with few, its estimate is a worse start than none."""
+
+
+@dataclass(frozen=True, slots=True)
+class Fit:
+    """A fitted logistic model.
+
+    Attributes
+    ----------
+    coefficients : (p,) float array
+        Log odds ratios per unit of each column. At the boundary (see ``limits``): +inf or -inf for a
+        column without finite estimate, NaN where it has no direction.
+    covariance : (p, p) float array
+        Inverse of the information at the optimum; NaN for columns without finite estimate.
+    log_likelihood : float
+        Of the Bernoulli form, so that grouped rows and single rows agree.
+    null_log_likelihood : float
+        Of the intercept alone (and the offset, if there is one).
+    n : int
+        People: rows counted by their frequency.
+    events : int
+        People with the event.
+    converged : bool
+    iterations : int
+        Evaluations of the information matrix over all rows.
+    decrement : float
+        U' I^-1 U at the coefficients.
+    limit_point : (p,) float array or None
+        At the boundary: finite coefficients that give the rows not fitted with certainty their
+        linear predictor.
+    """
+
+    coefficients: Array
+    covariance: Array
+    log_likelihood: float
+    null_log_likelihood: float
+    n: int
+    events: int
+    converged: bool
+    iterations: int
+    decrement: float
+    limit_point: Array | None = None
+
+
+def fit(
+    blocks: Blocks,
+    event: NDArray[np.bool_],
+    *,
+    counts: Counts | None = None,
+    offset: Array | None = None,
+    start: Array | None = None,
+    engine: str = "auto",
+) -> Fit:
+    """Fit a logistic model by maximum likelihood.
+
+    Newton's method over chunks of rows; stops when U' I^-1 U < 1e-12 max(1, |l|). The caller has made
+    sure that columns are independent (``rank``) and that an estimate exists (``separation``).
+
+    Parameters
+    ----------
+    blocks : Blocks of p columns
+    event : (n,) bool array
+    counts : (n,) array, optional
+        Frequency weights: how many people each row stands for.
+    offset : (n,) float array, optional
+        Added to the linear predictor, on the log odds scale.
+    start : (p,) float array, optional
+    engine : str
+        ``numpy``, ``compiled`` or ``auto``: compiled where it is installed and pays.
+
+    Raises
+    ------
+    EstimationError
+        If everyone or no one has the event, or the columns are so dependent that no step exists.
+    """
+    observed = Observed(blocks, event, counts, offset)
+    check_contrast(observed)
+    centred = centring(blocks)
+    evaluate = LogLikelihood(observed, None if centred is None else centred.centre)
+    if start is not None:
+        first = start if centred is None else centred.inward(start)
+    else:
+        first = _start(observed, evaluate)
+    optimum = maximise(evaluate, first, observed.people)
+    if optimum.iterations == 1 and not optimum.converged and np.isnan(optimum.decrement):
+        raise EstimationError(
+            "No estimate exists: some columns of the model can be computed from the others.",
+            "Remove variables that carry the same information.",
+        )
+    return finished(observed, optimum, centred)
+
+
+def check_contrast(observed: Observed) -> None:
+    """Refuse data in which everyone or no one has the event."""
+    events, people = observed.events, observed.people
+    if people <= 0:
+        raise EstimationError(
+            "No one is left to analyse.", "Look at the exclusions and at missing values in the flow of participants."
+        )
+    if events in (0, people):
+        who = "No one" if events == 0 else "Everyone"
+        raise EstimationError(
+            f"{who} of the {people:.0f} in the analysis set has the event, so no odds ratio can be estimated.",
+            "Check how the outcome is coded and which rows the exclusions and missing values leave.",
+        )
+
+
+def _start(observed: Observed, evaluate: LogLikelihood) -> Array:
+    """Coefficients to start from: a fit to part of the rows where there are many."""
+    cold = np.zeros(observed.blocks.p)
+    intercept = constant_column(observed.blocks)
+    if intercept is not None:
+        share = observed.events / observed.people
+        cold[intercept] = np.log(share / (1 - share)) / observed.blocks.array[0, intercept, 0]
+    part = _part(observed.blocks)
+    if part is None:
+        return cold
+    share_of_rows = observed.blocks.n / (part.rows * -(-observed.blocks.n_blocks // part.stride))
+    approach = maximise(
+        LogLikelihood(observed, evaluate.centre, part), cold, observed.people / share_of_rows, enough=0.1, iterations=15
+    )
+    curvature = Curvature.of(approach.sums.information * share_of_rows)
+    if not approach.converged or curvature is None:
+        return cold
+    return _approach(evaluate, approach.coefficients, curvature, observed.people)
+
+
+def _part(blocks: Blocks) -> Part | None:
+    """Which rows give the start; None if all should."""
+    if blocks.n < WARM_FROM or blocks.n // PART < ROWS_PER_COLUMN * blocks.p:
+        return None
+    rows = min(blocks.width, max(512, blocks.width // PART))
+    return Part(rows, max(1, PART * rows // blocks.width))
+
+
+def _approach(evaluate: LogLikelihood, start: Array, curvature: Curvature, people: float) -> Array:
+    """Go on with the part's curvature and the gradient of all rows: cheap passes, good steps."""
+    best, last = start, np.inf
+    coefficients = start
+    for _ in range(4):
+        gradient = evaluate(coefficients, information=False).gradient
+        whitened = curvature.whiten(gradient)
+        decrement = float(whitened @ whitened)
+        if not decrement < last / 2:
+            return best
+        best = coefficients
+        coefficients = coefficients + curvature.solve(gradient)
+        rate = min(1.0, decrement / last) if np.isfinite(last) else 0.01
+        # From here one step with all rows' own curvature reaches the maximum to nine digits.
+        if decrement * rate < 1e-9 * people:
+            return coefficients
+        last = decrement
+    return coefficients
+
+
+def finished(observed: Observed, optimum: Optimum, centred: Centring | None) -> Fit:
+    """The fit at an optimum, back on the scale of the user's columns."""
+    curvature = Curvature.of(optimum.sums.information)
+    p = observed.blocks.p
+    covariance = np.full((p, p), np.nan) if curvature is None else curvature.inverse()
+    coefficients = optimum.coefficients
+    if centred is not None:
+        coefficients = centred.outward(coefficients)
+        covariance = centred.outward_covariance(covariance)
+    return Fit(
+        coefficients=coefficients,
+        covariance=covariance,
+        log_likelihood=optimum.sums.log_likelihood,
+        null_log_likelihood=null_log_likelihood(observed),
+        n=round(observed.people),
+        events=round(observed.events),
+        converged=optimum.converged,
+        iterations=optimum.iterations,
+        decrement=optimum.decrement,
+    )
+
+
+def null_log_likelihood(observed: Observed) -> float:
+    """Log-likelihood of the intercept alone: d log(d/n) + (n - d) log(1 - d/n) without an offset."""
+    if observed.offset is None:
+        d, n = observed.events, observed.people
+        return float(d * np.log(d / n) + (n - d) * np.log1p(-d / n))
+    alone = Observed(Blocks.from_matrix(np.ones((observed.blocks.n, 1))), observed.event, observed.counts, observed.offset)
+    return maximise(LogLikelihood(alone), np.zeros(1), observed.people).sums.log_likelihood
