@@ -24,7 +24,11 @@ def draw(calibration: tree.Calibration, bins: Sequence[tree.RiskBin], setting: S
         Distribution of fitted risks; empty leaves the strip out.
     setting : Setting
     """
-    groups = [one for one in calibration.groups if one.mean_risk is not None and one.proportion is not None]
+    groups = [
+        one
+        for one in calibration.groups
+        if one.mean_risk is not None and one.proportion is not None and one.observed is not None
+    ]
     curve = curves.drawable(calibration.curve)
     if not groups and len(curve) < 2:
         return None

@@ -17,7 +17,11 @@ _MOST_PEOPLE = 400
 def draw(one: tree.OutcomeByQuantity, setting: Setting) -> Figure | None:
     """Draw the proportion against the quantity; None where nothing may be shown."""
     curve = curves.drawable(one.curve)
-    bins = [each for each in one.bins if each.mean is not None and each.proportion is not None]
+    bins = [
+        each
+        for each in one.bins
+        if each.mean is not None and each.proportion is not None and each.events is not None
+    ]
     if len(curve) < 2 and not bins:
         return None
     people = curves.thinned(one.points, _MOST_PEOPLE)

@@ -65,7 +65,7 @@ def linear(low: float, high: float, start: float, end: float, *, count: int = 5,
     low, high = _apart(low, high)
     step = _step((high - low) / max(count, 1))
     if widen:
-        low, high = math.floor(low / step + 1e-9) * step, math.ceil(high / step - 1e-9) * step
+        low, high = _widened(low, high, step)
     values = _multiples(low, high, step)
     return Scale(low, high, start, end, _labelled(values, step))
 
@@ -80,8 +80,8 @@ def probability(low: float, high: float, start: float, end: float, *, count: int
     """
     low, high = _apart(max(low, 0.0), min(high, 1.0))
     step = _step((high - low) / max(count, 1))
-    low = max(0.0, math.floor(low / step + 1e-9) * step)
-    high = min(1.0, math.ceil(high / step - 1e-9) * step)
+    low, high = _widened(low, high, step)
+    low, high = max(0.0, low), min(1.0, high)
     ticks = tuple(Tick(value, plain(100 * value, 100 * step) + "%") for value in _multiples(low, high, step))
     return Scale(low, high, start, end, ticks)
 
@@ -141,6 +141,14 @@ def _apart(low: float, high: float) -> tuple[float, float]:
         return low, high
     room = abs(low) * 0.1 or 0.5
     return low - room, low + room
+
+
+def _widened(low: float, high: float, step: float) -> tuple[float, float]:
+    """Move the ends out to multiples of ``step``, never inwards by a rounding error."""
+    return (
+        min(low, math.floor(low / step + 1e-9) * step),
+        max(high, math.ceil(high / step - 1e-9) * step),
+    )
 
 
 def _step(raw: float) -> float:
