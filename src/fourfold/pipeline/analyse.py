@@ -5,12 +5,9 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import replace
 
-import numpy as np
-
 from fourfold.data import design as data_design
 from fourfold.data.prepare import Prepared, prepare
 from fourfold.description.read import Loaded
-from fourfold.errors import EstimationError
 from fourfold.findings import catalogue, cautions
 from fourfold.pipeline import descriptives, estimates, provenance, shapes, tables, trust
 from fourfold.pipeline.model_fit import FittedModel, fit_model
@@ -53,6 +50,11 @@ def results_of(loaded: Loaded, prepared: Prepared, progress: Progress) -> tree.R
             crude = fit_model(built.subset([variable.name]), event, rows.counts)
             crude_rows += estimates.estimates_of(crude, rows, variables, analysis, compare)
     with stage(progress, "assessing the model"):
+        log_odds = adjusted.linear_predictor()
+        design = description.study.design
+        groups = (
+            description.assessment.groups if "groups" in description.assessment.model_fields_set else None
+        )
         results = tree.Results(
             format=1,
             study=study_of(loaded),
@@ -61,23 +63,23 @@ def results_of(loaded: Loaded, prepared: Prepared, progress: Progress) -> tree.R
             provenance=provenance.provenance_of(loaded, prepared, adjusted.fit.iterations),
             participants=prepared.participants,
             audit=prepared.audit,
-            descriptives=descriptives.descriptives_of(prepared, description.study.design),
-            tables=tables.fourfold_tables(rows, event, variables, description.study.design, analysis),
+            descriptives=descriptives.descriptives_of(prepared, design),
+            tables=tables.fourfold_tables(rows, event, variables, design, analysis),
             estimates=tree.Estimates(crude=crude_rows, adjusted=adjusted_rows),
             term_tests=term_tests,
-            model=trust.model_of(adjusted, description.study.design),
-            discrimination=trust.discrimination_of(adjusted, analysis),
-            calibration=trust.calibration_of(adjusted, analysis, description),
-            risk_distribution=trust.risk_distribution_of(adjusted, description.study.design),
-            sample_size=trust.sample_size_of(adjusted, analysis),
-            influence=trust.influence_of(adjusted, variables, analysis),
+            model=trust.model_of(adjusted, log_odds, design),
+            discrimination=trust.discrimination_of(adjusted, log_odds, analysis),
+            calibration=trust.calibration_of(adjusted, log_odds, analysis, design, groups),
+            risk_distribution=trust.risk_distribution_of(adjusted, log_odds, design),
+            sample_size=trust.sample_size_of(adjusted, analysis, design),
+            influence=trust.influence_of(adjusted, log_odds, variables, analysis),
             collinearity=trust.collinearity_of(adjusted, variables),
             curves=shapes.odds_ratio_curves(adjusted, variables, description, rows, analysis),
             outcome_by_quantity=shapes.outcome_by_quantity(
-                rows, event, variables, analysis, description.analysis.seed, description.study.design
+                rows, event, variables, analysis, description.analysis.seed
             ),
             findings=[],
-            cautions=cautions.for_study(description.study.design, description.study.purpose),
+            cautions=cautions.for_study(design, description.study.purpose),
         )
         return replace(results, findings=catalogue.notice(results))
 
@@ -130,13 +132,3 @@ def _with_knots(variables: Sequence[tree.Variable], model: FittedModel) -> list[
         replace(variable, knots=knots[variable.name]) if knots.get(variable.name) else variable
         for variable in variables
     ]
-
-
-def require_contrast(event: np.ndarray) -> None:
-    """Raise where everybody or nobody has the event: no odds ratio exists."""
-    if event.all() or not event.any():
-        who = "Everybody" if event.all() else "Nobody"
-        raise EstimationError(
-            f"{who} in the analysis set has the event, so no odds ratio exists.",
-            "Check which value is `present:` for the outcome, the exclusions and the missing values.",
-        )

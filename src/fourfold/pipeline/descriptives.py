@@ -29,9 +29,7 @@ def descriptives_of(prepared: Prepared, design: str) -> tree.Descriptives:
     return tree.Descriptives(by_outcome=_table(rows, outcome, described), by_exposure=by_exposure)
 
 
-def _table(
-    rows: Rows, by: tree.Variable, variables: Sequence[tree.Variable]
-) -> tree.DescriptiveTable:
+def _table(rows: Rows, by: tree.Variable, variables: Sequence[tree.Variable]) -> tree.DescriptiveTable:
     column = rows.columns[by.name]
     groups = _groups(column, by)
     known = ~np.isnan(column.values)
@@ -43,7 +41,7 @@ def _table(
         by=by.name,
         by_label=by.label,
         groups=[name for name, _ in groups],
-        group_sizes=[_people(rows, mask) for _, mask in groups],
+        group_sizes=[rows.count(mask) for _, mask in groups],
         rows=described,
     )
 
@@ -102,20 +100,18 @@ def _share(
     rows: Rows, column: Column, group: NDArray[np.bool_], inside: NDArray[np.bool_], name: str
 ) -> tree.DescriptiveCell:
     present = group & ~np.isnan(column.values)
-    total = _people(rows, present)
-    count = _people(rows, present & inside)
+    total = rows.count(present)
+    count = rows.count(present & inside)
     return tree.DescriptiveCell(
         group=name,
         count=count,
         total=total,
         percent=100 * count / total if total else None,
-        missing=_people(rows, group) - total,
+        missing=rows.count(group) - total,
     )
 
 
-def _moments(
-    rows: Rows, column: Column, group: NDArray[np.bool_], name: str
-) -> tree.DescriptiveCell:
+def _moments(rows: Rows, column: Column, group: NDArray[np.bool_], name: str) -> tree.DescriptiveCell:
     present = group & ~np.isnan(column.values)
     x = column.values[present]
     if rows.counts is not None:
@@ -130,9 +126,5 @@ def _moments(
         lower_quartile=quartiles[0],
         median=quartiles[1],
         upper_quartile=quartiles[2],
-        missing=_people(rows, group) - total,
+        missing=rows.count(group) - total,
     )
-
-
-def _people(rows: Rows, inside: NDArray[np.bool_]) -> int:
-    return rows.count(inside)

@@ -11,7 +11,7 @@ from numpy.typing import NDArray
 from scipy.special import chdtrc, ndtri
 
 from fourfold.data.columns import Rows
-from fourfold.data.design import Design, DesignTerm
+from fourfold.data.design import DesignTerm
 from fourfold.models import profile
 from fourfold.models import tests as model_tests
 from fourfold.pipeline.model_fit import FittedModel
@@ -79,8 +79,13 @@ def _single_columns(model: FittedModel, analysis: tree.Analysis) -> dict[int, Lo
     # A boundary has no standard error: where the estimate is infinite only the profile speaks.
     if by_profile or model.separated:
         limits = profile.profile_limits(
-            model.blocks, model.event, model.fit, columns,
-            confidence=analysis.confidence, counts=model.counts, separation=separated,
+            model.blocks,
+            model.event,
+            model.fit,
+            columns,
+            confidence=analysis.confidence,
+            counts=model.counts,
+            separation=separated,
         )
         ratio_tests = model_tests.likelihood_ratio(
             model.blocks, model.event, model.fit, [(column,) for column in columns], counts=model.counts
@@ -119,7 +124,7 @@ def _row(
     else:
         level = term.levels[place]
         inside = values == rows.columns[variable.name].levels.index(str(level))
-    events, total = _people(rows, inside & event), _people(rows, inside)
+    events, total = rows.count(inside & event), rows.count(inside)
     if variable.kind == "quantity" and variable.shape == "linear":
         per = variable.per if variable.per is not None else 1.0
     else:
@@ -142,7 +147,7 @@ def _contrasts(
     pairs: Iterable[tuple[float, float]],
 ) -> list[tree.Estimate]:
     everyone = np.ones(rows.n, dtype=bool)
-    events, total = _people(rows, everyone & model.event), _people(rows, everyone)
+    events, total = rows.count(everyone & model.event), rows.people
     answer = []
     for start, end in pairs:
         contrast = np.zeros(len(model.design.parameters))
@@ -151,17 +156,22 @@ def _contrasts(
         found = _contrast(model, term, contrast, analysis)
         answer.append(
             _estimate(
-                variable, found, 1.0, analysis,
-                level=None, reference=None, per=None, events=events, total=total,
+                variable,
+                found,
+                1.0,
+                analysis,
+                level=None,
+                reference=None,
+                per=None,
+                events=events,
+                total=total,
                 contrast=[float(start), float(end)],
             )  # fmt: skip
         )
     return answer
 
 
-def _contrast(
-    model: FittedModel, term: DesignTerm, contrast: Array, analysis: tree.Analysis
-) -> LogOdds:
+def _contrast(model: FittedModel, term: DesignTerm, contrast: Array, analysis: tree.Analysis) -> LogOdds:
     directions = {int(model.separation.direction[column]) for column in term.columns}
     if directions != {0}:
         return LogOdds(math.inf, math.nan, -math.inf, math.inf, math.nan, 2)
@@ -226,10 +236,6 @@ def _ratio(log_odds: float) -> float | None:
     return math.exp(log_odds)
 
 
-def _people(rows: Rows, inside: NDArray[np.bool_]) -> int:
-    return int(inside.sum()) if rows.counts is None else int(rows.counts[inside].sum())
-
-
 def term_tests_of(
     model: FittedModel, variables: Sequence[tree.Variable], analysis: tree.Analysis
 ) -> list[tree.TermTest]:
@@ -259,8 +265,3 @@ def term_tests_of(
         )
         for (term, _, part), result in zip(wanted, results, strict=True)
     ]
-
-
-def crude_design(design: Design, variable: str) -> Design:
-    """The same rows with one term alone."""
-    return design.subset([variable])

@@ -42,9 +42,7 @@ class FittedModel:
         return np.asarray(self.design.matrix() @ self.fit.coefficients)
 
 
-def fit_model(
-    design: Design, event: NDArray[np.bool_], counts: NDArray[np.int64] | None
-) -> FittedModel:
+def fit_model(design: Design, event: NDArray[np.bool_], counts: NDArray[np.int64] | None) -> FittedModel:
     """Fit ``design`` to ``event``.
 
     Raises
@@ -66,9 +64,7 @@ def fit_model(
 
 def _dependence(design: Design, group: tuple[int, ...]) -> Problem:
     names = [design.parameters[column] for column in group if design.parameters[column] != "(intercept)"]
-    owners = [
-        term.variable for term in design.terms if any(column in term.columns for column in group)
-    ]
+    owners = [term.variable for term in design.terms if any(column in term.columns for column in group)]
     if len(names) == 1:
         return Problem(
             f"{names[0]} has the same value in every row of the analysis set, so it has no estimate.",

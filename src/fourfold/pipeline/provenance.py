@@ -13,7 +13,7 @@ from fourfold.results import tree
 USED = ("jinja2", "numpy", "pandas", "pydantic", "pyyaml", "scipy", "weasyprint")
 
 
-def provenance_of(loaded: Loaded, prepared: Prepared, iterations: int) -> tree.Provenance:
+def provenance_of(loaded: Loaded, prepared: Prepared, iterations: int | None) -> tree.Provenance:
     """Everything needed to run it again; paths are names only, never folders of a machine."""
     return tree.Provenance(
         fourfold=__version__,

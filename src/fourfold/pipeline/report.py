@@ -29,9 +29,7 @@ class Done:
         return [finding for finding in self.results.findings if finding.grade == "serious"]
 
 
-def report(
-    study: Path, into: Path | None, progress: Progress, *, allow_outside: bool = False
-) -> Done:
+def report(study: Path, into: Path | None, progress: Progress, *, allow_outside: bool = False) -> Done:
     """Analyse the study and write its report.
 
     Raises
@@ -60,9 +58,7 @@ def render_again(saved: Path, into: Path | None, progress: Progress) -> Done:
     return _write(results, ("html", "pdf"), folder, progress)
 
 
-def _write(
-    results: tree.Results, formats: Sequence[str], folder: Path, progress: Progress
-) -> Done:
+def _write(results: tree.Results, formats: Sequence[str], folder: Path, progress: Progress) -> Done:
     with stage(progress, "drawing the report"):
         rendered = build.render(results, formats, progress)
     files = {"results.json": json_file.dumps(results).encode("utf-8"), **rendered.files}

@@ -20,14 +20,13 @@ def fourfold_tables(
     analysis: tree.Analysis,
 ) -> list[tree.FourfoldTable]:
     """One table for each binary exposure (or predictor), cells counted in people."""
-    weight = np.ones(rows.n, dtype=np.int64) if rows.counts is None else rows.counts
     found = []
     for variable in variables:
         if variable.kind != "binary" or variable.role not in ("exposure", "predictor"):
             continue
         exposed = rows.columns[variable.name].values == 1
         cells = [
-            int(weight[mask].sum())
+            rows.count(mask)
             for mask in (exposed & event, exposed & ~event, ~exposed & event, ~exposed & ~event)
         ]
         found.append(
