@@ -11,7 +11,7 @@ from fourfold.errors import EstimationError
 from fourfold.models.blocks import Blocks
 from fourfold.models.centring import Centring, centring, constant_column
 from fourfold.models.likelihood import LogLikelihood, Observed, Part
-from fourfold.models.newton import Curvature, Optimum, maximise
+from fourfold.models.newton import ITERATIONS, Curvature, Optimum, maximise
 
 Array = NDArray[np.float64]
 Counts = NDArray[np.int64] | NDArray[np.float64]
@@ -101,18 +101,25 @@ def fit(
     observed = Observed(blocks, event, counts, offset)
     check_contrast(observed)
     centred = centring(blocks)
-    evaluate = LogLikelihood(observed, None if centred is None else centred.centre)
-    if start is not None:
-        first = start if centred is None else centred.inward(start)
-    else:
-        first = _start(observed, evaluate)
-    optimum = maximise(evaluate, first, observed.people)
-    if optimum.iterations == 1 and not optimum.converged and np.isnan(optimum.decrement):
+    optimum = climb(observed, centred, start)
+    if optimum.iterations == 1 and np.isnan(optimum.decrement):
         raise EstimationError(
             "No estimate exists: some columns of the model can be computed from the others.",
             "Remove variables that carry the same information.",
         )
     return finished(observed, optimum, centred)
+
+
+def climb(
+    observed: Observed, centred: Centring | None, start: Array | None = None, iterations: int = ITERATIONS
+) -> Optimum:
+    """The maximum in terms of the centred columns, from a start on the user's scale."""
+    evaluate = LogLikelihood(observed, None if centred is None else centred.centre)
+    if start is None:
+        first = _start(observed, evaluate)
+    else:
+        first = start if centred is None else centred.inward(start)
+    return maximise(evaluate, first, observed.people, iterations=iterations)
 
 
 def check_contrast(observed: Observed) -> None:
