@@ -118,6 +118,13 @@ def test_one_event_is_singular_and_empty_parts_are_allowed() -> None:
     assert "0 people" in drawn(0, 0, 5, 40).svg
 
 
+def test_a_bare_level_is_named_with_its_variable() -> None:
+    figure = drawn(45, 147, 61, 420, exposed="yes", unexposed="no")
+    assert "Current smoker: yes: 45 events" in figure.alt
+    assert ">Current smoker: no<" in figure.svg
+    assert "Current smoker: Current smoker" not in drawn(45, 147, 61, 420).alt
+
+
 def test_hostile_labels_stay_words() -> None:
     figure = drawn(45, 147, 61, 420, label=HOSTILE, exposed=HOSTILE)
     assert "<script" not in figure.svg

@@ -51,10 +51,8 @@ def draw(table: tree.FourfoldTable, setting: Setting) -> Figure | None:
     if where is None or cells is None:
         return None
     a, b, c, d = cells
-    headings = [
-        lettering.block(label, _LEFT - 14, most=3, bold=True)
-        for label in (table.exposed_label, table.unexposed_label)
-    ]
+    parts = [_part(table.label, level, setting) for level in (table.exposed_label, table.unexposed_label)]
+    headings = [lettering.block(part, _LEFT - 14, most=3, bold=True) for part in parts]
     top = max(heading.height for heading in headings) + 22
     canvas = Canvas(2 * _LEFT + _SIDE, top + _SIDE + 6)
     _square(canvas, where, _LEFT, top, _SIDE)
@@ -64,8 +62,8 @@ def draw(table: tree.FourfoldTable, setting: Setting) -> Figure | None:
 
     values = {
         "label": table.label,
-        "exposed": table.exposed_label,
-        "unexposed": table.unexposed_label,
+        "exposed": parts[0],
+        "unexposed": parts[1],
         "cells": {
             "a": setting.say("tile.events", n=a),
             "b": setting.say("tile.others", n=b),
@@ -102,6 +100,13 @@ def mark(table: tree.FourfoldTable | None, side: float = 44.0) -> str:
     else:
         _square(canvas, where, 0.5, 0.5, side - 1)
     return canvas.ornament()
+
+
+def _part(label: str, level: str, setting: Setting) -> str:
+    """Name a part of the square: a bare level such as ``yes`` says nothing without its variable."""
+    if label.casefold() in level.casefold():
+        return level
+    return setting.say("tile.part", label=label, level=level)
 
 
 def _cells(table: tree.FourfoldTable) -> tuple[int, int, int, int] | None:
