@@ -87,14 +87,7 @@ def auc(
         from fourfold.assessment import compiled_ranks
 
         return Auc(*compiled_ranks.area(score, event, events), events, event.size - events)
-    with_event, without = score[event], score[~event]
-    with_event.sort()
-    without.sort()
-    if events <= without.size:
-        return _interleaved(with_event, without)
-    # Searching is cheaper for the shorter sample: turned round, both ranks are mirrored.
-    mirrored = _interleaved(without, with_event)
-    return Auc(1 - mirrored.estimate, mirrored.standard_error, events, without.size)
+    return _merged(score, event)
 
 
 def discrimination(
@@ -163,26 +156,32 @@ def _require_contrast(events: int, non_events: int) -> None:
         )
 
 
-def _interleaved(shorter: Array, longer: Array) -> Auc:
-    """Area with DeLong's error from the two samples sorted; the shorter has the higher-is-event role."""
-    m, n = shorter.size, longer.size
-    below = longer.searchsorted(shorter)
-    tied = longer[np.minimum(below, n - 1)] == shorter
-    if tied.any():
-        upto = below.copy()
-        upto[tied] = longer.searchsorted(shorter[tied], side="right")
-        # Of the j-th longer value: shorter values below it, and not above it, counted twice over.
-        twice = np.bincount(below, minlength=n + 1)[:n] + np.bincount(upto, minlength=n + 1)[:n]
-        placed = (below + upto) * (0.5 / n)
-    else:
-        twice = 2 * np.bincount(below, minlength=n + 1)[:n]
-        placed = below * (1.0 / n)
-    other = np.cumsum(twice) * (-0.5 / m)
-    # Sums of whole numbers are exact in doubles, so the area is as good as its one division.
-    estimate = float(placed.sum() / m)
-    other += 1 - estimate
-    placed -= estimate
-    return Auc(estimate, _error(float(placed @ placed), m, float(other @ other), n), m, n)
+def _merged(score: Array, event: NDArray[np.bool_]) -> Auc:
+    m = int(np.count_nonzero(event))
+    n = event.size - m
+    both = np.empty(score.size)
+    with_event, without = both[:m], both[m:]
+    # Taking by place is several times as fast as taking by mask, for outcomes in random order.
+    with_event[:] = score.take(np.flatnonzero(event))
+    without[:] = score.take(np.flatnonzero(~event))
+    with_event.sort()
+    without.sort()
+    # A stable sort of two sorted runs is one merge.
+    order = np.argsort(both, kind="stable")
+    ordered, is_event = both[order], order < m
+    new = ordered[1:] != ordered[:-1]
+    if new.all():
+        below, other = np.flatnonzero(is_event), np.flatnonzero(~is_event)
+        below -= np.arange(m)
+        other -= np.arange(n)
+        estimate = int(below.sum()) / (m * n)
+        placed, mirrored = below * (1 / n), other * (-1 / m)
+        placed -= estimate
+        mirrored += 1 - estimate
+        return Auc(estimate, _error(float(placed @ placed), m, float(mirrored @ mirrored), n), m, n)
+    ends = np.append(np.flatnonzero(new), m + n - 1)
+    people = np.diff(ends, prepend=-1)
+    return _from_tally(Tally(ordered[ends], people, np.diff(np.cumsum(is_event)[ends], prepend=0)))
 
 
 def _error(squares_events: float, events: int, squares_non_events: float, non_events: int) -> float:
