@@ -8,8 +8,8 @@ from collections.abc import Callable, Iterator
 from dataclasses import replace
 from xml.etree import ElementTree
 
-import figure_samples as samples
 import pytest
+from tests.report.figures import figure_samples as samples
 
 from fourfold.report.figures import (
     calibration,

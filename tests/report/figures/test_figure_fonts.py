@@ -10,8 +10,8 @@ import pdfplumber
 import pikepdf
 import pytest
 import weasyprint
-from figure_samples import estimates, setting, table
 from fontTools.ttLib import TTFont
+from tests.report.figures.figure_samples import estimates, setting, table
 
 from fourfold.report import assets
 from fourfold.report.figures import canvas, fonts, forest, palette, tile

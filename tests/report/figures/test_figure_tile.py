@@ -6,9 +6,9 @@ from typing import Any
 from xml.etree import ElementTree
 
 import pytest
-from figure_samples import HOSTILE, setting, table
 from hypothesis import given
 from hypothesis import strategies as st
+from tests.report.figures.figure_samples import HOSTILE, setting, table
 
 from fourfold.report.figures import tile
 from fourfold.report.figures.figure import Figure
