@@ -67,7 +67,7 @@ class Centring:
 def constant_column(blocks: Blocks) -> int | None:
     """First column with the same value, other than zero, in every row; usually the intercept."""
     array = blocks.array
-    for column in np.flatnonzero((np.ptp(array[0, :, : blocks.rows_in(0)], axis=1) == 0)):
+    for column in np.flatnonzero(np.ptp(array[0, :, : blocks.rows_in(0)], axis=1) == 0):
         value = array[0, column, 0]
         last = blocks.n_blocks - 1
         if (

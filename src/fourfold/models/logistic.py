@@ -127,7 +127,8 @@ def check_contrast(observed: Observed) -> None:
     events, people = observed.events, observed.people
     if people <= 0:
         raise EstimationError(
-            "No one is left to analyse.", "Look at the exclusions and at missing values in the flow of participants."
+            "No one is left to analyse.",
+            "Look at the exclusions and at missing values in the flow of participants.",
         )
     if events in (0, people):
         who = "No one" if events == 0 else "Everyone"
@@ -149,7 +150,11 @@ def _start(observed: Observed, evaluate: LogLikelihood) -> Array:
         return cold
     share_of_rows = observed.blocks.n / (part.rows * -(-observed.blocks.n_blocks // part.stride))
     approach = maximise(
-        LogLikelihood(observed, evaluate.centre, part), cold, observed.people / share_of_rows, enough=0.1, iterations=15
+        LogLikelihood(observed, evaluate.centre, part),
+        cold,
+        observed.people / share_of_rows,
+        enough=0.1,
+        iterations=15,
     )
     curvature = Curvature.of(approach.sums.information * share_of_rows)
     if not approach.converged or curvature is None:
@@ -212,5 +217,7 @@ def null_log_likelihood(observed: Observed) -> float:
     if observed.offset is None:
         d, n = observed.events, observed.people
         return float(d * np.log(d / n) + (n - d) * np.log1p(-d / n))
-    alone = Observed(Blocks.from_matrix(np.ones((observed.blocks.n, 1))), observed.event, observed.counts, observed.offset)
+    alone = Observed(
+        Blocks.from_matrix(np.ones((observed.blocks.n, 1))), observed.event, observed.counts, observed.offset
+    )
     return maximise(LogLikelihood(alone), np.zeros(1), observed.people).sums.log_likelihood

@@ -48,9 +48,7 @@ def dependent(
     return sorted({tuple(sorted((column, *others))) for column, others in _relations(blocks, counts)})
 
 
-def independent(
-    blocks: Blocks, counts: NDArray[np.int64] | NDArray[np.float64] | None = None
-) -> list[int]:
+def independent(blocks: Blocks, counts: NDArray[np.int64] | NDArray[np.float64] | None = None) -> list[int]:
     """Choose columns that are independent and from which all others can be computed, in order."""
     left_out = {column for column, _ in _relations(blocks, counts)}
     return [column for column in range(blocks.p) if column not in left_out]
@@ -133,7 +131,9 @@ def _read_relations(
             continue
         makes_up = solve_triangular(reduced[:rank, :rank], reduced[:rank, place]) if rank else np.zeros(0)
         # In units of spread: what is smaller than this is rounding.
-        members = [int(other) for other, share in zip(independent, makes_up, strict=True) if abs(share) > 1e-6]
+        members = [
+            int(other) for other, share in zip(independent, makes_up, strict=True) if abs(share) > 1e-6
+        ]
         if centred is not None and _needs_intercept(column, independent, makes_up, scale, centred):
             members.append(centred.intercept)
         relations.append((column, tuple(members)))

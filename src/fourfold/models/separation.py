@@ -10,9 +10,8 @@ from numpy.typing import NDArray
 from fourfold.models.blocks import Blocks
 from fourfold.models.centring import centring
 from fourfold.models.cone import POSITIVE, Cone
-from fourfold.models.likelihood import LogLikelihood, Observed
+from fourfold.models.likelihood import Observed
 from fourfold.models.logistic import Fit, climb
-from fourfold.models.newton import Curvature
 
 Array = NDArray[np.float64]
 Counts = NDArray[np.int64] | NDArray[np.float64]
