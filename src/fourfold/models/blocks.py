@@ -89,4 +89,4 @@ class Blocks:
 
     def product(self, coefficients: Array) -> Array:
         """Linear predictor of every row, shape (n,)."""
-        return np.matmul(coefficients, self.array).reshape(-1)[: self.n]
+        return np.asarray(np.matmul(coefficients, self.array).reshape(-1)[: self.n])

@@ -7,6 +7,7 @@ are added in their own order. The same data therefore give the same bits on one 
 from __future__ import annotations
 
 import functools
+import itertools
 import os
 from collections.abc import Callable, Iterator
 from concurrent.futures import ThreadPoolExecutor
@@ -47,7 +48,7 @@ def lanes_of(n_blocks: int) -> list[range]:
     """Contiguous ranges of blocks, at most ``LANES`` of them."""
     n_lanes = min(LANES, n_blocks)
     edges = [n_blocks * lane // n_lanes for lane in range(n_lanes + 1)]
-    return [range(a, b) for a, b in zip(edges, edges[1:], strict=False)]
+    return [range(a, b) for a, b in itertools.pairwise(edges)]
 
 
 def over_lanes(

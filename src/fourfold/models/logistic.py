@@ -133,7 +133,7 @@ def check_contrast(observed: Observed) -> None:
     if events in (0, people):
         who = "No one" if events == 0 else "Everyone"
         raise EstimationError(
-            f"{who} of the {people:.0f} in the analysis set has the event, so no odds ratio can be estimated.",
+            f"{who} of the {people:.0f} in the analysis set has the event: no odds ratio can be estimated.",
             "Check how the outcome is coded and which rows the exclusions and missing values leave.",
         )
 

@@ -33,9 +33,9 @@ class Curvature:
         diagonal = np.diagonal(information)
         if not bool(np.all(diagonal > 0) and np.all(np.isfinite(information))):
             return None
-        scale = 1 / np.sqrt(diagonal)
+        scale: Array = np.asarray(1 / np.sqrt(diagonal))
         try:
-            factor = np.linalg.cholesky(information * scale[:, None] * scale)
+            factor: Array = np.linalg.cholesky(information * scale[:, None] * scale)
         except np.linalg.LinAlgError:
             return None
         return cls(scale, factor)

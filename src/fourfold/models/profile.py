@@ -214,14 +214,11 @@ def _advance(
         nuisance = rise - ahead**2 / size
         error = np.abs(2 * (here.log_likelihood - target)) + np.abs(nuisance)
         room = 2 * (here.log_likelihood + rise / 2 - target)
-        good = np.isfinite(error) & (size > 0) & (room > 0)
+        good = np.isfinite(error) & (room > 0)
         # Too far out for the quadratic model: half way back to the estimate.
         step = np.where(
             good[:, None],
-            g
-            + sides[alive, None]
-            * h
-            * np.sqrt(np.where(good, room, 0) / np.where(size > 0, size, 1))[:, None],
+            g + h * (sides[alive] * np.sqrt(np.where(good, room / size, 0)))[:, None],
             (centre - points[alive]) / 2,
         )
         points[alive] += step

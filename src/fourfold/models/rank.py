@@ -123,7 +123,7 @@ def _read_relations(
     _, reduced, order = qr(factor, mode="economic", pivoting=True)
     left = np.abs(np.diagonal(reduced))
     rank = int(np.argmax(left < tolerance[order])) if bool((left < tolerance[order]).any()) else len(left)
-    independent = order[:rank]
+    independent = [int(column) for column in order[:rank]]
     relations = []
     for place in range(rank, len(order)):
         column = int(order[place])
@@ -141,7 +141,7 @@ def _read_relations(
 
 
 def _needs_intercept(
-    column: int, independent: NDArray[np.intp], makes_up: Array, scale: Array, centred: Centring
+    column: int, independent: list[int], makes_up: Array, scale: Array, centred: Centring
 ) -> bool:
     """Whether a constant is part of the relation between the columns."""
     if scale[column] == 0:

@@ -142,13 +142,13 @@ def _reduced_together(observed: Observed, fit: Fit, dropped: Sequence[tuple[int,
         decrement = np.einsum("ki,ki->k", gradient, step)
         good = np.isfinite(decrement) & (decrement >= 0) & (decrement < 2 * last[alive])
         done = good & (decrement < tolerance)
-        for row in np.flatnonzero(done):
+        for row in np.flatnonzero(done).tolist():
             answers[together[alive[row]]] = here.log_likelihood[row] + decrement[row] / 2
         points[alive] += step
         renew = bool((decrement[good & ~done] > 0.05 * last[alive][good & ~done]).any())
         last[alive] = decrement
         alive = alive[good & ~done]
-    for place in np.flatnonzero(np.isnan(answers)):
+    for place in np.flatnonzero(np.isnan(answers)).tolist():
         answers[place] = _alone(observed, dropped[place])
     return [float(answer) for answer in answers]
 

@@ -49,5 +49,5 @@ def triangular_factor(
             rows = rows * scale[:, None]
             if row_weight is not None:
                 rows *= row_weight(block)
-            factor = np.linalg.qr(np.vstack([factor, rows.T]), mode="r")
+            factor = np.asarray(np.linalg.qr(np.vstack([factor, rows.T]), mode="r"))
     return factor
