@@ -7,6 +7,7 @@ The study around them is invented.
 from __future__ import annotations
 
 import csv
+import itertools
 import json
 import math
 from collections.abc import Callable, Sequence
@@ -289,7 +290,7 @@ def discrimination() -> tree.Discrimination:
 
 
 def calibration() -> tree.Calibration:
-    risk, event = fitted()
+    risk, _ = fitted()
     table = CASE["hosmer_lemeshow"]["table"]
     order = np.argsort(risk, kind="stable")
     groups, start = [], 0
@@ -359,7 +360,7 @@ def bins() -> list[tree.RiskBin]:
             events=int(np.sum(event & (risk >= low) & (risk < high))),
             non_events=int(np.sum(~event & (risk >= low) & (risk < high))),
         )
-        for low, high in zip(edges[:-1], edges[1:], strict=True)
+        for low, high in itertools.pairwise(edges)
     ]
 
 
@@ -412,7 +413,7 @@ def quantity_curve() -> tree.OutcomeByQuantity:
     weight = np.array([float(row["lwt"]) for row in ROWS])
     edges = [80, 105, 120, 130, 155, 251]
     binned = []
-    for low, high in zip(edges[:-1], edges[1:], strict=True):
+    for low, high in itertools.pairwise(edges):
         inside = (weight >= low) & (weight < high)
         k = int(np.sum(inside & np.array([row["low"] == "yes" for row in ROWS])))
         n = int(inside.sum())
@@ -563,10 +564,10 @@ def cohort(prediction: bool = False) -> tree.Results:
             shrinkage=CASE["heuristic_shrinkage"],
             r_squared=0.125,
             criteria=[
-                tree.SampleSizeCriterion(id="shrinkage", required=536, shortfall=347),
-                tree.SampleSizeCriterion(id="optimism", required=244, shortfall=55),
-                tree.SampleSizeCriterion(id="overall risk", required=330, shortfall=141),
-                tree.SampleSizeCriterion(id="error", required=402, shortfall=213),
+                tree.SampleSizeCriterion(id="c1", required=536, shortfall=347),
+                tree.SampleSizeCriterion(id="c2", required=244, shortfall=55),
+                tree.SampleSizeCriterion(id="c3", required=330, shortfall=141),
+                tree.SampleSizeCriterion(id="c4", required=402, shortfall=213),
             ],
             required=536,
             shortfall=347,

@@ -37,6 +37,10 @@ def _association(writer: Writer) -> list[str]:
     exposures = writer.of_role("exposure")
     for exposure in exposures:
         sentences += _exposure(writer, exposure)
+    # With several exposures the shares stand in the fourfold tables: an answer stays short.
+    absolute = _absolute(writer, exposures[0]) if len(exposures) == 1 else None
+    if absolute:
+        sentences.append(absolute)
     uncertain = [
         estimate
         for exposure in exposures
@@ -53,9 +57,7 @@ def _exposure(writer: Writer, exposure: tree.Variable) -> list[str]:
     estimates = writer.estimates(exposure.name)
     if len(estimates) > 1 and exposure.kind in ("category", "ordered"):
         return [_levels(writer, exposure, estimates)]
-    sentences = [_estimate(writer, estimate) for estimate in estimates]
-    absolute = _absolute(writer, exposure)
-    return [*sentences, absolute] if absolute else sentences
+    return [_estimate(writer, estimate) for estimate in estimates]
 
 
 def _estimate(writer: Writer, estimate: tree.Estimate) -> str:
@@ -131,8 +133,8 @@ def _absolute(writer: Writer, exposure: tree.Variable) -> str | None:
             f"answer.absolute.{writer.share}",
             first=_of(writer, first, table.a + table.b),
             second=_of(writer, second, table.c + table.d),
-            exposed=f"{exposure.label}: {table.exposed_label}",
-            unexposed=f"{exposure.label}: {table.unexposed_label}",
+            exposed=table.exposed_label,
+            unexposed=table.unexposed_label,
         )
     return None
 
@@ -183,14 +185,13 @@ def _prediction(writer: Writer) -> list[str]:
     n = writer.numbers.count(participants.analysed, participants.hidden.get("analysed"))
     events = writer.numbers.count(participants.events, participants.hidden.get("events"))
     sentences = []
-    if found is None or found.auc is None or found.lower is None or found.upper is None:
+    if found is None or found.auc is None:
         sentences.append(
             writer.say(
                 "answer.prediction.performance_hidden", n=n, events=events, event=writer.event_phrase()
             )
         )
     else:
-        digits = 2
         sentences.append(
             writer.say(
                 "answer.prediction.performance" + ("_case_control" if writer.case_control else ""),
@@ -198,13 +199,7 @@ def _prediction(writer: Writer) -> list[str]:
                 events=events,
                 event=writer.event_phrase(),
                 pairs=writer.numbers.percent(100 * found.auc),
-                auc=writer.numbers.number(found.auc, digits),
-                confidence=writer.confidence,
-                interval=writer.say(
-                    "labels.joining.interval",
-                    lower=writer.numbers.number(found.lower, digits),
-                    upper=writer.numbers.number(found.upper, digits),
-                ),
+                auc=cells.area(writer, found, 2),
             )
         )
     size = writer.results.sample_size

@@ -73,7 +73,8 @@ def ratio(
         return Cell(f"{writer.numbers.odds_ratio(value)} ({limits(writer, lower, upper, value)})")
     if hidden:
         return hidden_cell(writer)
-    if note in SEPARATED:
+    # A bound without an estimate says the same of a fourfold table with an empty cell.
+    if note in SEPARATED or lower is not None or upper is not None:
         return Cell(_no_finite_estimate(writer, lower, upper), "words")
     return absent(writer)
 
@@ -113,6 +114,18 @@ def number(writer: Writer, value: float | None, digits: int, hidden: bool = Fals
     if value is None:
         return hidden_cell(writer) if hidden else absent(writer)
     return Cell(writer.numbers.number(value, digits))
+
+
+def area(writer: Writer, found: tree.Discrimination, digits: int) -> str:
+    """``0.75 (95% CI 0.67 to 0.81)``; a bound alone, or no interval, where that is all there is."""
+    number = writer.numbers.number
+    if found.auc is None:
+        return writer.say("labels.hidden.word") if found.hidden else writer.say("labels.absent")
+    lower = None if found.lower is None else number(found.lower, digits)
+    upper = None if found.upper is None else number(found.upper, digits)
+    return writer.say(
+        "labels.area", area=number(found.auc, digits), lower=lower, upper=upper, confidence=writer.confidence
+    )
 
 
 def hidden_note(writer: Writer, rows: list[Row]) -> list[str]:

@@ -14,10 +14,14 @@ from fourfold.report.writer import Writer
 
 @dataclass(frozen=True, slots=True)
 class Place:
-    """A section of the report that answers an item; ``note`` says in what way."""
+    """A section of the report that answers an item.
+
+    ``note`` says in what way; ``statement`` is the whole answer where nothing was done.
+    """
 
     section: str
     note: str | None
+    statement: str | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -72,8 +76,8 @@ def _item(writer: Writer, entry: Mapping[str, Any], asks: str, facts: Mapping[st
         for place in entry.get("run", [])
         if facts[place.get("when", "always")]
     ]
-    if not answered and "none" in entry and not stated:
-        answered = [Place(entry["none"]["section"], entry["none"]["text"])]
+    if not answered and "none" in entry and not stated and facts[entry["none"].get("when", "always")]:
+        answered = [Place(entry["none"]["section"], None, entry["none"]["text"])]
     to_write = None if by_author else entry.get("author")
     if entry.get("author_unless") and facts[entry["author_unless"]]:
         to_write = None
@@ -124,6 +128,7 @@ def _facts(writer: Writer) -> dict[str, bool]:
         "reasons": bool(covariates) and all(variable.reason for variable in covariates),
         "bands": any(variable.cuts for variable in results.variables),
         "absolute": writer.share != "none" and bool(results.tables),
+        "case_control": writer.case_control,
         "selection": analysis.selection is not None,
         "equation": results.model.withheld is None and not writer.case_control,
     }

@@ -5,7 +5,6 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass
 
-from fourfold.report.words import in_sentence
 from fourfold.report.writer import Writer
 from fourfold.results import tree
 
@@ -57,7 +56,9 @@ def _design(writer: Writer) -> list[str]:
     ]
     reasons = [exclusion.reason for exclusion in writer.results.participants.exclusions]
     key = "exclusions" if reasons else "no_exclusions"
-    sentences.append(say(f"methods.design.{key}", reasons=[in_sentence(reason) for reason in reasons]))
+    sentences.append(
+        say(f"methods.design.{key}", reasons=[writer.words.inline(reason) for reason in reasons])
+    )
     if analysis.counts_variable:
         sentences.append(say("methods.design.counts", name=analysis.counts_variable))
     if analysis.matched_on:
@@ -79,7 +80,7 @@ def _variables(writer: Writer) -> list[str]:
     sentences = [
         say("methods.variables.outcome", outcome=writer.inline(outcome.name), present=outcome.present)
     ]
-    modelled = writer.of_role("exposure", "predictor", "covariate")
+    modelled = writer.modelled()
     sentences += [_variable(writer, variable) for variable in modelled]
     for variable in modelled:
         if variable.cuts:
@@ -95,7 +96,11 @@ def _variables(writer: Writer) -> list[str]:
     if analysis.candidates is not None:
         sentences.append(say("methods.variables.candidates", n=writer.numbers.count(analysis.candidates)))
     reasons = [
-        say("methods.variables.reason", label=writer.inline(found.name), reason=in_sentence(found.reason))
+        say(
+            "methods.variables.reason",
+            label=writer.inline(found.name),
+            reason=writer.words.inline(found.reason),
+        )
         for found in writer.of_role("covariate")
         if found.reason
     ]
@@ -131,7 +136,7 @@ def _variable(writer: Writer, variable: tree.Variable) -> str:
 
 def _model(writer: Writer) -> list[str]:
     analysis, model, say = writer.results.analysis, writer.results.model, writer.say
-    modelled = [writer.inline(found.name) for found in writer.of_role("exposure", "predictor", "covariate")]
+    modelled = [writer.inline(found.name) for found in writer.modelled()]
     sentences = [
         say(
             "methods.model.fit" if len(modelled) > 1 else "methods.model.fit_one",
@@ -186,11 +191,13 @@ def _assessment(writer: Writer) -> list[str]:
                 say(
                     "methods.assessment.hosmer_lemeshow",
                     groups=calibration.hosmer_lemeshow.groups,
-                    rule=calibration.hosmer_lemeshow.rule,
+                    rule=writer.phrase(calibration.hosmer_lemeshow.rule),
                 )
             )
         if calibration.brier is not None or calibration.curve:
-            sentences.append(say("methods.assessment.calibration", method=calibration.curve_method))
+            sentences.append(
+                say("methods.assessment.calibration", method=writer.phrase(calibration.curve_method))
+            )
     if results.model.r_squared is not None:
         sentences.append(say("methods.assessment.r_squared"))
     if results.sample_size is not None:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from fourfold.report import cells
 from fourfold.report.comparisons import (
     comparison,
     covariate_labels,
@@ -10,7 +11,6 @@ from fourfold.report.comparisons import (
     p_phrase,
     ratio,
 )
-from fourfold.report.words import in_sentence
 from fourfold.report.writer import Writer
 from fourfold.results import tree
 
@@ -46,7 +46,7 @@ def _flow(writer: Writer) -> list[str]:
         reasons = [
             say(
                 "results.flow.reason",
-                reason=in_sentence(exclusion.reason),
+                reason=writer.words.inline(exclusion.reason),
                 count=numbers.count(exclusion.count, exclusion.hidden.get("count")),
             )
             for exclusion in flow.exclusions
@@ -127,23 +127,17 @@ def _estimate(writer: Writer, crude: tree.Estimate | None, adjusted: tree.Estima
 def _trust(writer: Writer) -> list[str]:
     found, calibration, numbers = writer.results.discrimination, writer.results.calibration, writer.numbers
     sentences = []
-    if found is not None and found.auc is not None and found.lower is not None and found.upper is not None:
+    if found is not None and found.auc is not None:
         brier = calibration.brier if calibration is not None else None
         sentences.append(
             writer.say(
                 f"results.trust.{'auc_case_control' if writer.case_control else 'auc'}",
-                auc=numbers.number(found.auc, 2),
-                confidence=writer.confidence,
-                interval=writer.say(
-                    "labels.joining.interval",
-                    lower=numbers.number(found.lower, 2),
-                    upper=numbers.number(found.upper, 2),
-                ),
+                auc=cells.area(writer, found, 2),
                 brier=None if brier is None else numbers.number(brier, 3),
             )
         )
     test = calibration.hosmer_lemeshow if calibration is not None else None
-    if test is not None and test.statistic is not None and test.verdict is None:
+    if test is not None and test.statistic is not None and test.df is not None and test.verdict is None:
         sentences.append(
             writer.say(
                 "results.trust.hosmer_lemeshow",

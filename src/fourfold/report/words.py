@@ -6,6 +6,7 @@ never itself read as a template. What comes out is plain text: the page escapes 
 
 from __future__ import annotations
 
+import re
 from collections.abc import Mapping, Sequence
 from functools import cache
 from typing import Any
@@ -15,6 +16,8 @@ from jinja2.sandbox import ImmutableSandboxedEnvironment
 
 from fourfold.report import assets
 from fourfold.report.numbers import Numbers, filters
+
+_SPACES = re.compile(r"[ \t\r\n]+")
 
 
 class Words:
@@ -27,13 +30,22 @@ class Words:
     numbers : Numbers
     labels : mapping
         Variable name -> label, for the ``label`` filter.
+    given : mapping
+        Values that every text may use, such as the words that the design allows.
     """
 
-    def __init__(self, language: str, numbers: Numbers, labels: Mapping[str, str]) -> None:
+    def __init__(
+        self,
+        language: str,
+        numbers: Numbers,
+        labels: Mapping[str, str],
+        given: Mapping[str, str] | None = None,
+    ) -> None:
         self.language = language
         self.numbers = numbers
         self._labels = labels
         self._environment = _environment(language, numbers, labels)
+        self._environment.globals.update(given or {})
         self._compiled: dict[str, Template] = {}
 
     def say(self, key: str, **values: Any) -> str:
@@ -72,10 +84,14 @@ class Words:
     def fill(self, template: str, **values: Any) -> str:
         """Fill a text of a language file; runs of white space become one space."""
         if "{" not in template:
-            return " ".join(template.split())
+            return _single_spaced(template)
         if template not in self._compiled:
             self._compiled[template] = self._environment.from_string(template)
-        return " ".join(self._compiled[template].render(**values).split())
+        return _single_spaced(self._compiled[template].render(**values))
+
+    def inline(self, label: str) -> str:
+        """A label, or a stated reason, as it stands inside a sentence."""
+        return in_sentence(self.language, label)
 
     def listed(self, items: Sequence[str], joiner: str = "and") -> str:
         """``a``; ``a and b``; ``a, b and c``."""
@@ -97,12 +113,12 @@ def _environment(language: str, numbers: Numbers, labels: Mapping[str, str]) -> 
         undefined=StrictUndefined, autoescape=False, trim_blocks=True, lstrip_blocks=True
     )
     environment.filters.update(filters(numbers, labels))
-    environment.filters["label"] = lambda name: in_sentence(labels.get(name, name))
+    environment.filters["label"] = lambda name: in_sentence(language, labels.get(name, name))
     environment.filters["labels"] = lambda names: listed(
-        language, [in_sentence(labels.get(name, name)) for name in names]
+        language, [in_sentence(language, labels.get(name, name)) for name in names]
     )
     environment.filters["listed"] = lambda items, joiner="and": listed(language, list(items), joiner)
-    environment.filters["inline"] = in_sentence
+    environment.filters["inline"] = lambda label: in_sentence(language, label)
     environment.filters["capital"] = capital
     environment.globals["cite"] = cite
     return environment
@@ -117,17 +133,27 @@ def cite(*keys: str) -> str:
     return CITE_OPEN + ",".join(keys) + CITE_CLOSE
 
 
+def _single_spaced(text: str) -> str:
+    # Not str.split(): a no-break space is there on purpose.
+    return _SPACES.sub(" ", text).strip(" ")
+
+
 @cache
-def in_sentence(label: str) -> str:
+def in_sentence(language: str, label: str) -> str:
     """A label as it stands inside a sentence: its capital goes where it only began the label.
 
-    Abbreviations (``ASA class``, ``BMI``), names with an apostrophe (``Crohn's disease``) and a
-    lone letter keep it.
+    Abbreviations (``ASA class``, ``BMI``), names with an apostrophe (``Crohn's disease``, but not
+    ``Mother's age``) and a lone letter keep it. The language file says whether its sentences lower
+    a first letter at all, and which words (``Mother``) are no names.
     """
+    rules = assets.language_file(language, "labels")["in_sentence"]
+    if not rules["lower_first"]:
+        return label
     first = label.split(maxsplit=1)[0] if label.strip() else ""
     ordinary = len(first) > 1 and first[1:].replace("-", "").islower()
-    possessive = first.endswith(("'s", "’s"))
-    if not ordinary or possessive or label != label.lstrip():
+    owner = first.replace("’", "'").removesuffix("'s")
+    named = owner != first and owner.lower() not in rules["owners"]
+    if not (ordinary or owner != first) or named or label != label.lstrip():
         return label
     return label[0].lower() + label[1:]
 

@@ -10,7 +10,7 @@ from typing import Any
 from fourfold.report.assets import language_file
 from fourfold.report.cleaned import cleaned
 from fourfold.report.numbers import Numbers
-from fourfold.report.words import Words, in_sentence
+from fourfold.report.words import Words
 from fourfold.results import tree
 
 RISK_DESIGNS = ("cohort",)
@@ -41,11 +41,19 @@ class Writer:
             between=words["joining"]["to"],
         )
         labels = {variable.name: variable.label for variable in safe.variables}
-        return cls(safe, numbers, Words(safe.analysis.language, numbers, labels))
+        given = words["designs"][safe.study.design]
+        return cls(
+            safe, numbers, Words(safe.analysis.language, numbers, labels, given)
+        )
 
     def say(self, key: str, **values: Any) -> str:
         """A text of the language, filled; see `Words.say`."""
         return self.words.say(key, **values)
+
+    def phrase(self, text: str) -> str:
+        """A rule or method that the results name, in the language's words where it has them."""
+        known = self.words.entry("labels.phrases").get(text)
+        return text if known is None else self.words.fill(known)
 
     @cached_property
     def variables(self) -> dict[str, tree.Variable]:
@@ -87,7 +95,7 @@ class Writer:
 
     def inline(self, name: str) -> str:
         """A variable's label as it stands in a sentence."""
-        return in_sentence(self.label(name))
+        return self.words.inline(self.label(name))
 
     def event_phrase(self) -> str:
         """What the odds are odds of, in a sentence."""
@@ -101,6 +109,10 @@ class Writer:
 
     def of_role(self, *roles: str) -> list[tree.Variable]:
         return [variable for variable in self.results.variables if variable.role in roles]
+
+    def modelled(self) -> list[tree.Variable]:
+        """Every variable of the adjusted model."""
+        return self.of_role("exposure", "predictor", "covariate")
 
     def estimates(self, name: str, crude: bool = False) -> list[tree.Estimate]:
         """Estimates of one variable, in order of its levels or contrasts."""

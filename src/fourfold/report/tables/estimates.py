@@ -28,7 +28,7 @@ def odds_ratio_table(writer: Writer, id: str, names: Sequence[str], caption: str
     ]
     general = writer.say(
         "labels.notes.odds_ratios",
-        adjusted_for=[found.name for found in writer.of_role("exposure", "predictor", "covariate")],
+        adjusted_for=[found.name for found in writer.modelled()],
         n=writer.results.participants.analysed,
         intervals=analysis.intervals,
         p_adjusted=_test_name(writer),

@@ -46,7 +46,14 @@ def equation(writer: Writer) -> Table:
 def _coefficient(writer: Writer, value: float | None, hidden: bool) -> Cell:
     if value is None:
         return cells.hidden_cell(writer) if hidden else Cell(writer.say("labels.separated.none"), "words")
-    return Cell(writer.numbers.number(value, 5))
+    return Cell(writer.numbers.number(value, _decimals(value)))
+
+
+def _decimals(value: float) -> int:
+    """Decimals that give five significant figures, so that others can use the equation."""
+    if value == 0:
+        return 5
+    return min(max(4 - math.floor(math.log10(abs(value))), 2), 10)
 
 
 def _standard_error(writer: Writer, place: int) -> Cell:
@@ -56,7 +63,9 @@ def _standard_error(writer: Writer, place: int) -> Cell:
     variance = model.covariance[place][place]
     if variance is None:
         return cells.absent(writer)
-    return Cell(writer.numbers.number(math.sqrt(variance), 5))
+    error = math.sqrt(variance)
+    coefficient = model.coefficients[place]
+    return Cell(writer.numbers.number(error, _decimals(error if coefficient is None else coefficient)))
 
 
 def _knots(writer: Writer) -> list[str]:

@@ -16,7 +16,7 @@ def performance(writer: Writer) -> Table | None:
     if found is not None:
         rows.append(
             Row(
-                writer.say("labels.performance.auc", confidence=writer.confidence),
+                writer.say("labels.performance.auc"),
                 [_auc(writer, found), _reading(writer, "auc")],
             )
         )
@@ -66,17 +66,7 @@ def performance(writer: Writer) -> Table | None:
 
 
 def _auc(writer: Writer, found: tree.Discrimination) -> Cell:
-    if found.auc is None:
-        return cells.hidden_cell(writer) if found.hidden else cells.absent(writer)
-    auc = writer.numbers.number(found.auc, 3)
-    if found.lower is None or found.upper is None:
-        return Cell(auc)
-    limits = writer.say(
-        "labels.joining.interval",
-        lower=writer.numbers.number(found.lower, 3),
-        upper=writer.numbers.number(found.upper, 3),
-    )
-    return Cell(f"{auc} ({limits})")
+    return Cell(cells.area(writer, found, 3), "hidden" if found.auc is None and found.hidden else "value")
 
 
 def _reading(writer: Writer, name: str) -> Cell:
@@ -89,6 +79,8 @@ def hosmer_lemeshow(writer: Writer) -> Table | None:
     if calibration is None or not calibration.groups:
         return None
     with_risk = not writer.case_control
+    # A share of fewer than 20 people is not printed; a column of dashes would say nothing.
+    with_share = with_risk and any(len(_proportion(writer, group).text) > 1 for group in calibration.groups)
     rows = [
         Row(
             str(place),
@@ -97,20 +89,20 @@ def hosmer_lemeshow(writer: Writer) -> Table | None:
                 cells.count(writer, group.n, group.hidden.get("n")),
                 cells.count(writer, group.observed, group.hidden.get("observed")),
                 cells.number(writer, group.expected, 1, "expected" in group.hidden),
-                *([_proportion(writer, group)] if with_risk else []),
+                *([_proportion(writer, group)] if with_share else []),
             ],
         )
         for place, group in enumerate(calibration.groups, start=1)
     ]
-    headings = [Heading(writer.say("labels.columns.group"), 10 if with_risk else 25)]
+    headings = [Heading(writer.say("labels.columns.group"), 10 if with_share else 25, numeric=False)]
     if with_risk:
         headings.append(Heading(writer.say("labels.columns.fitted_risk"), 21))
     headings += [
-        Heading(writer.say("labels.columns.people"), 13 if with_risk else 25),
-        Heading(writer.say("labels.columns.observed"), 13 if with_risk else 25),
-        Heading(writer.say("labels.columns.expected"), 13 if with_risk else 25),
+        Heading(writer.say("labels.columns.people"), 13 if with_share else 18),
+        Heading(writer.say("labels.columns.observed"), 13 if with_share else 18),
+        Heading(writer.say("labels.columns.expected"), 13 if with_share else 18),
     ]
-    if with_risk:
+    if with_share:
         headings.append(
             Heading(writer.say("labels.columns.observed_share", confidence=writer.confidence), 30)
         )
@@ -149,8 +141,8 @@ def _hosmer_lemeshow_notes(writer: Writer, calibration: tree.Calibration) -> lis
     found = calibration.hosmer_lemeshow
     if found is None:
         return []
-    notes = [writer.say("labels.hosmer_lemeshow.rule", rule=found.rule, groups=found.groups)]
-    if found.statistic is not None:
+    notes = [writer.say("labels.hosmer_lemeshow.rule", rule=writer.phrase(found.rule), groups=found.groups)]
+    if found.statistic is not None and found.df is not None:
         notes.append(
             writer.say(
                 "labels.hosmer_lemeshow.statistic",
@@ -180,7 +172,7 @@ def sample_size(writer: Writer) -> Table | None:
         return None
     rows = [
         Row(
-            writer.say(f"labels.riley.{criterion.id.replace('-', '_').replace(' ', '_')}"),
+            writer.say(f"labels.riley.{criterion.id}"),
             [
                 cells.count(writer, criterion.required, found.hidden.get("criteria")),
                 cells.count(writer, criterion.shortfall, found.hidden.get("criteria")),
