@@ -1,181 +1,134 @@
 """The typed study description: every key a person may write, its meaning and an example.
 
-The models here are the only source of the keys: the reader checks against them, and the key
-help and the JSON Schema are generated from them.
+The models here and in the files they come from are the only source of the keys: the reader
+checks against them, and the key help and the JSON Schema are generated from them.
 """
 
 from __future__ import annotations
 
-from datetime import date
-from typing import Annotated, Literal
+from fourfold.description.choices import (
+    AnalysisChoices,
+    AssessmentChoices,
+    DisclosureRules,
+    FollowUp,
+    ReportChoices,
+    Sampling,
+    Selection,
+)
+from fourfold.description.header import DataSource, Period, StudyHeader
+from fourfold.description.roles import Condition, Exclusion, Role
+from fourfold.description.scalars import Scalar, Text
+from fourfold.description.section import Section, key
+from fourfold.description.variable import Shape, Spline, SplineShape, Variable
 
-from pydantic import BaseModel, ConfigDict, Field
-
-Scalar = str | int | float | bool
-
-
-class Section(BaseModel):
-    """Base of every mapping in a description: unknown keys are errors, values do not change."""
-
-    model_config = ConfigDict(extra="forbid", frozen=True, populate_by_name=True)
-
-
-class Period(Section):
-    """Dates between which the study took place."""
-
-    from_: date | None = Field(None, alias="from", examples=["2021-01-01"])
-    to: date | None = Field(None, examples=["2023-12-31"])
-
-
-class StudyHeader(Section):
-    """What was studied."""
-
-    title: str = Field(examples=["Wound infection after elective bowel surgery, Quillmere"])
-    design: Literal["cohort", "case-control", "cross-sectional", "survey"] = Field(examples=["cohort"])
-    purpose: Literal["association", "prediction"] = Field(examples=["association"])
-    setting: str | None = None
-    period: Period | None = None
-    authors: list[str] = Field(default_factory=list)
-    stated: dict[str, str] = Field(default_factory=dict)  # answers to checklist items, by item number
-
-
-class DataSource(Section):
-    """Where the rows are and how they are written."""
-
-    file: str = Field(examples=["wound-infection.csv"])
-    table: str | None = None  # sqlite, duckdb
-    sheet: str | None = None  # xlsx, ods
-    identifier: str | None = None
-    counts: str | None = None  # column: rows that stand for many
-    missing: list[Scalar | None] = Field(default_factory=lambda: ["", "NA"])
-    delimiter: str | None = None
-    decimal: Literal[".", ","] = "."
-    encoding: str | None = None
-
-
-class Spline(Section):
-    knots: int | list[float] = 4
-
-
-class SplineShape(Section):
-    spline: Spline
-
-
-Shape = Literal["linear", "quadratic", "log2"] | SplineShape
-
-
-class Variable(Section):
-    """One column and how it enters the analysis."""
-
-    kind: Literal["quantity", "category", "ordered", "binary", "date"] | None = None  # bands: from/cut
-    label: str | None = None
-    column: str | None = None  # name in the file where it differs from the key
-    present: Scalar | None = None
-    unit: str | None = None
-    per: float | None = None
-    plausible: tuple[float, float] | None = None
-    missing: list[Scalar | None] = Field(default_factory=list)
-    levels: list[Scalar] = Field(default_factory=list)
-    reference: Scalar | None = None  # a level; for a shaped quantity, the value compared against
-    shape: Shape = "linear"
-    from_: str | None = Field(None, alias="from")
-    cut: list[float] = Field(default_factory=list)
-    cut_chosen: Literal["beforehand", "from the data", "from the outcome"] | None = None
-    compare: list[tuple[float, float]] = Field(default_factory=list)  # contrasts of a shaped quantity
-    expected: Literal["raises", "lowers"] | None = None
-
-
-class Role(Section):
-    """A variable in the model, with why it is there. Written as a bare name or as a mapping."""
-
-    variable: str
-    reason: str | None = None
-    planned: bool | None = None
-
-
-class Condition(Section):
-    """One structured condition; exactly one test, or all:/any: of several."""
-
-    variable: str | None = None
-    is_: Scalar | None = Field(None, alias="is")
-    is_not: Scalar | None = None
-    in_: list[Scalar] | None = Field(None, alias="in")
-    below: float | date | None = None
-    above: float | date | None = None
-    missing: bool | None = None
-    all: list[Condition] | None = None
-    any: list[Condition] | None = None
-
-
-class Exclusion(Section):
-    reason: str
-    where: Condition
-
-
-class FollowUp(Section):
-    """Whether everybody was watched for as long, and when the exposure was known."""
-
-    statement: list[Literal["equal", "unequal", "censored", "competing events"]] = Field(default_factory=list)
-    variable: str | None = None  # a quantity: length of follow-up; unequal if it varies
-    exposure_measured: Literal["at start", "during follow-up"] | None = None
-
-
-class Selection(Section):
-    """How the variables in the model were arrived at."""
-
-    method: Literal["beforehand", "stepwise", "univariable screening", "other"] = "beforehand"
-    candidates: int | None = None  # parameters considered in all
-
-
-class Sampling(Section):
-    """Structure of the sample that this analysis does not yet use; stated so that it is reported."""
-
-    clusters: str | None = None
-    weights: str | None = None
-    matched_on: list[str] = Field(default_factory=list)
-
-
-class AnalysisChoices(Section):
-    estimator: Literal["maximum likelihood"] = "maximum likelihood"
-    confidence: Annotated[float, Field(gt=50, lt=100)] = 95
-    intervals: Literal["profile likelihood", "Wald"] = "profile likelihood"
-    standard_errors: Literal["model-based"] = "model-based"
-    missing_data: Literal["complete cases"] = "complete cases"
-    seed: int = 20260101
-
-
-class AssessmentChoices(Section):
-    groups: Annotated[int, Field(ge=3, le=1000)] = 10
-
-
-class DisclosureRules(Section):
-    smallest_count: Annotated[int, Field(ge=0)] = 5
-    hide_zero: bool = False
-    show_people: bool = False
-
-
-class ReportChoices(Section):
-    formats: list[Literal["html", "pdf"]] = Field(default_factory=lambda: ["html", "pdf"])
-    language: Literal["en"] = "en"
+__all__ = [
+    "AnalysisChoices",
+    "AssessmentChoices",
+    "Condition",
+    "DataSource",
+    "DisclosureRules",
+    "Exclusion",
+    "FollowUp",
+    "Period",
+    "ReportChoices",
+    "Role",
+    "Sampling",
+    "Scalar",
+    "Section",
+    "Selection",
+    "Shape",
+    "Spline",
+    "SplineShape",
+    "StudyDescription",
+    "StudyHeader",
+    "Variable",
+]
 
 
 class StudyDescription(Section):
-    """The whole description."""
+    """A study and how it is to be analysed."""
 
-    study: StudyHeader
-    data: DataSource
-    variables: dict[str, Variable]
-    outcome: str
-    exposures: list[Role] = Field(default_factory=list)
-    predictors: list[Role] = Field(default_factory=list)
-    covariates: list[Role] = Field(default_factory=list)
-    exclusions: list[Exclusion] = Field(default_factory=list)
-    follow_up: FollowUp | None = None
-    selection: Selection | None = None
-    sampling: Sampling | None = None
-    analysis: AnalysisChoices = Field(default_factory=AnalysisChoices)
-    assessment: AssessmentChoices = Field(default_factory=AssessmentChoices)
-    disclosure: DisclosureRules = Field(default_factory=DisclosureRules)
-    report: ReportChoices = Field(default_factory=ReportChoices)
-
-
+    study: StudyHeader = key(
+        "What was studied.",
+        example="study:\n  title: Wound infection after elective bowel surgery, Quillmere\n"
+        "  design: cohort\n  purpose: association",
+    )
+    data: DataSource = key(
+        "Where the rows are and how they are written.",
+        example="data: {file: wound-infection.csv, identifier: patient}",
+    )
+    variables: dict[Text, Variable] = key(
+        "The variables, each under a name of your choice: the column's name, unless `column:` gives it.",
+        example='variables:\n  infection: {label: Wound infection, kind: binary, present: "yes"}\n'
+        "  age: {label: Age, kind: quantity, unit: years}",
+    )
+    outcome: Text = key(
+        "The binary variable that is explained or foretold; its `present:` value is the event.",
+        example="outcome: infection",
+    )
+    exposures: list[Role] = key(
+        "The variables whose odds ratios answer the question.",
+        example="exposures: [smoker]",
+        factory=list,
+        otherwise="Required where the purpose is association; not allowed where it is prediction.",
+    )
+    predictors: list[Role] = key(
+        "The variables that together foretell the outcome.",
+        example="study: {purpose: prediction}\npredictors: [smoker, age]",
+        factory=list,
+        otherwise="Required where the purpose is prediction; not allowed where it is association.",
+    )
+    covariates: list[Role] = key(
+        "Variables that the exposures' odds ratios are adjusted for; not themselves the question.",
+        example="covariates:\n  - age\n  - {variable: bmi, reason: Goes with smoking, planned: true}",
+        factory=list,
+        otherwise="Nothing is adjusted for but the other exposures.",
+    )
+    exclusions: list[Exclusion] = key(
+        "Rows that are left out, in this order; each step is counted in the participant flow.",
+        example="exclusions:\n  - {reason: Under 18, where: {variable: age, below: 18}}",
+        factory=list,
+        otherwise="Nobody is left out.",
+    )
+    follow_up: FollowUp | None = key(
+        "Whether everybody was watched for as long, and when the exposure was known.",
+        example="follow_up: {statement: [equal], exposure_measured: at start}",
+        default=None,
+        otherwise="The report says that it is not stated.",
+    )
+    selection: Selection | None = key(
+        "How the variables in the model were arrived at.",
+        example="selection: {method: beforehand}",
+        default=None,
+        otherwise="The report says that it is not stated.",
+    )
+    sampling: Sampling | None = key(
+        "Structure of the sample that the analysis does not use; stated so that it is reported.",
+        example="sampling: {clusters: hospital}",
+        default=None,
+        otherwise="People are taken to be independent and to count the same.",
+    )
+    analysis: AnalysisChoices = key(
+        "How the model is fitted and its limits computed.",
+        example="analysis: {confidence: 95, intervals: profile likelihood}",
+        factory=AnalysisChoices,
+        otherwise="The defaults of its keys.",
+    )
+    assessment: AssessmentChoices = key(
+        "How the model is examined.",
+        example="assessment: {groups: 10}",
+        factory=AssessmentChoices,
+        otherwise="The defaults of its keys.",
+    )
+    disclosure: DisclosureRules = key(
+        "Which counts are hidden from the report, so that no person can be recognised.",
+        example="disclosure: {smallest_count: 5}",
+        factory=DisclosureRules,
+        otherwise="The defaults of its keys: counts under 5 are hidden.",
+    )
+    report: ReportChoices = key(
+        "What is written.",
+        example="report: {formats: [html, pdf], language: en}",
+        factory=ReportChoices,
+        otherwise="The defaults of its keys.",
+    )
