@@ -73,11 +73,11 @@ def smooth_curve(
     if found.values.size < FEWEST_RISKS:
         return SmoothCalibration([], METHOD_NONE)
     low, high = found.quantiles([0.01, 0.99])
-    method = METHOD
+    everyone, method = found, METHOD
     if found.values.size > MOST_RISKS:
         found, method = found.gathered(MOST_RISKS), METHOD_GATHERED
     smoothed = np.clip(local_regression(found, found.values, SPAN, DEGREE).fitted, 0.0, 1.0)
-    e50, e90, emax, ici = _distances(found, smoothed)
+    ici, e50, e90, emax = _distances(everyone, found, smoothed)
     curve: list[tree.CurvePoint] = []
     if high > low:
         at = np.linspace(low, high, points)
@@ -96,10 +96,16 @@ def smooth_curve(
     return SmoothCalibration(curve, method, ici=ici, e50=e50, e90=e90, emax=emax)
 
 
-def _distances(found: Tally, smoothed: Array) -> tuple[float, float, float, float]:
-    """Median, 90th percentile, largest and mean distance, over people."""
-    distance = np.abs(found.values - smoothed)
-    spread = tally(distance, np.zeros(distance.size, dtype=bool), found.people)
+def _distances(everyone: Tally, found: Tally, smoothed: Array) -> tuple[float, float, float, float]:
+    """Mean, median, 90th percentile and largest distance, over people."""
+    if everyone is not found:
+        # Between groups the curve is read off a straight line; beyond them it is computed.
+        ends = everyone.values[[0, -1]]
+        low, high = np.clip(local_regression(found, ends, SPAN, DEGREE).fitted, 0.0, 1.0)
+        at = np.concatenate([ends[:1], found.values, ends[1:]])
+        smoothed = np.interp(everyone.values, at, np.concatenate([[low], smoothed, [high]]))
+    distance = np.abs(everyone.values - smoothed)
+    spread = tally(distance, np.zeros(distance.size, dtype=bool), everyone.people)
     e50, e90 = spread.quantiles([0.5, 0.9])
-    mean = float(distance @ found.people / found.total)
-    return float(e50), float(e90), float(distance.max()), mean
+    mean = float(distance @ everyone.people / everyone.total)
+    return mean, float(e50), float(e90), float(distance.max())

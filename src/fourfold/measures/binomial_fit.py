@@ -48,6 +48,7 @@ def binomial_fit(
     b = np.zeros(columns.shape[1])
     value = log_likelihood(offset + columns @ b, d, n)
     covariance = np.full((b.size, b.size), np.nan)
+    decrement = np.inf
     for _ in range(60):
         risk = expit(offset + columns @ b)
         score = columns.T @ (d - n * risk)
@@ -59,8 +60,10 @@ def binomial_fit(
             return BinomialFit(b, covariance, value, False)
         if not np.all(np.isfinite(step)) or np.any(np.diag(covariance) < 0):
             return BinomialFit(b, covariance, value, False)
+        # The step after a decrement this small is exact to doubles; covariance is taken there.
+        settled = decrement < 1e-12
         decrement = float(score @ step)
-        if decrement < 1e-20 * max(1.0, abs(value)):
+        if settled:
             break
         size = 1.0
         # Close to the optimum the likelihood no longer tells a good step from rounding.
