@@ -320,3 +320,19 @@ def test_tables_name_their_rows_and_columns():
     assert ("html", "lang", "en") in found.attributes
     assert {"header", "nav", "main", "footer"} <= set(found.tags)
     assert found.links[0] == "#report"
+
+
+@pytest.mark.parametrize("name", SAMPLES)
+def test_columns_fill_the_table_and_no_more(name):
+    # Layout is fixed: columns that add up to more than the table would run over the margin.
+    content = page.page(Writer.of(getattr(sample, name)()))
+    found = content.tables
+    every = [
+        *found.characteristics, found.missing, found.patterns, found.leading, found.covariates,
+        found.term_tests, found.crude_rows, found.equation, found.performance, found.hosmer_lemeshow,
+        found.sample_size, found.influence, found.collinearity, *(block.table for block in found.fourfold),
+    ]  # fmt: skip
+    for table in every:
+        if table is not None:
+            assert 92 <= sum(table.widths) <= 100, table.id
+            assert all(len(row.cells) == len(table.headings) - 1 for row in table.rows), table.id

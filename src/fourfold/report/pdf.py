@@ -42,7 +42,8 @@ def pdf(page: str, attachments: dict[str, tuple[str, str]]) -> bytes:
     Raises
     ------
     RenderingError
-        If WeasyPrint, or the Pango library that it needs, cannot be loaded.
+        If WeasyPrint, or the Pango library that it needs, cannot be loaded, or the page asks for
+        anything that the report did not make.
     """
     try:
         import weasyprint
@@ -61,8 +62,16 @@ def pdf(page: str, attachments: dict[str, tuple[str, str]]) -> bytes:
         )
         for name, (content, what) in sorted(attachments.items())
     ]
-    with _no_clock():
-        made = document.write_pdf(pdf_variant="pdf/ua-1", attachments=attached)
+    from weasyprint.urls import FatalURLFetchingError
+
+    try:
+        with _no_clock():
+            made = document.write_pdf(pdf_variant="pdf/ua-1", attachments=attached)
+    except FatalURLFetchingError as error:
+        raise RenderingError(
+            f"The PDF was not made, because its page asked for something outside the report: {error}.",
+            "A report is whole in itself; a template that was changed is the likely cause.",
+        ) from error
     return bytes(made)
 
 

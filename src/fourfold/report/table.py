@@ -8,7 +8,7 @@ from dataclasses import dataclass, field
 
 @dataclass(frozen=True, slots=True)
 class Heading:
-    """Head of a column. ``width`` is its share of the table in percent (layout is fixed)."""
+    """Head of a column. ``width`` is relative to the other columns'."""
 
     text: str
     width: float
@@ -45,5 +45,7 @@ class Table:
     wide: bool = False
 
     @property
-    def has_hidden(self) -> bool:
-        return any(cell.kind == "hidden" for row in self.rows for cell in row.cells)
+    def widths(self) -> list[int]:
+        """Widths in whole percent, never more than 100 together: layout is fixed."""
+        total = sum(heading.width for heading in self.headings)
+        return [int(100 * heading.width / total) for heading in self.headings]

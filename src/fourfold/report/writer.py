@@ -42,9 +42,7 @@ class Writer:
         )
         labels = {variable.name: variable.label for variable in safe.variables}
         given = words["designs"][safe.study.design]
-        return cls(
-            safe, numbers, Words(safe.analysis.language, numbers, labels, given)
-        )
+        return cls(safe, numbers, Words(safe.analysis.language, numbers, labels, given))
 
     def say(self, key: str, **values: Any) -> str:
         """A text of the language, filled; see `Words.say`."""

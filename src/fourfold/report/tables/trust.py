@@ -94,13 +94,13 @@ def hosmer_lemeshow(writer: Writer) -> Table | None:
         )
         for place, group in enumerate(calibration.groups, start=1)
     ]
-    headings = [Heading(writer.say("labels.columns.group"), 10 if with_share else 25, numeric=False)]
+    headings = [Heading(writer.say("labels.columns.group"), 10, numeric=False)]
     if with_risk:
         headings.append(Heading(writer.say("labels.columns.fitted_risk"), 21))
     headings += [
-        Heading(writer.say("labels.columns.people"), 13 if with_share else 18),
-        Heading(writer.say("labels.columns.observed"), 13 if with_share else 18),
-        Heading(writer.say("labels.columns.expected"), 13 if with_share else 18),
+        Heading(writer.say("labels.columns.people"), 13),
+        Heading(writer.say("labels.columns.observed"), 13),
+        Heading(writer.say("labels.columns.expected"), 13),
     ]
     if with_share:
         headings.append(
