@@ -3,13 +3,13 @@
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass
 from pathlib import Path
 from typing import Any
 
 import pytest
+import yaml
 
-from fourfold.description.model import StudyDescription
+from fourfold.description.read import Loaded, load
 
 REFERENCE = Path(__file__).parent.parent / "reference"
 VARIABLES = {
@@ -18,35 +18,36 @@ VARIABLES = {
     "age": {"kind": "quantity", "unit": "years"},
 }
 
-
-@dataclass(frozen=True)
-class Described:
-    """A description in memory with the folder its data file is looked for in."""
-
-    description: StudyDescription
-    path: Path
+Study = Callable[..., Loaded]
 
 
-Study = Callable[..., Any]
+@pytest.fixture
+def reference() -> Path:
+    """The folder of open data and reference results."""
+    return REFERENCE
 
 
 @pytest.fixture
 def study(tmp_path: Path) -> Study:
-    """Write a data file (text or bytes; None for one that is there) and describe it."""
+    """Write a data file (text or bytes; None for one that is there) and a description of it; load it.
 
-    def make(content: str | bytes | None, *, file: str = "rows.csv", folder: Path = tmp_path, **keys: Any) -> Any:
+    Whatever is not given is a small cohort: fever by exposure, and age.
+    """
+
+    def make(content: str | bytes | None, *, file: str = "rows.csv", **keys: Any) -> Loaded:
         if content is not None:
-            (folder / file).write_bytes(content.encode() if isinstance(content, str) else content)
-        header = {"title": "Fever in Ashmere", "design": "cohort", "purpose": "association"}
+            (tmp_path / file).write_bytes(content.encode() if isinstance(content, str) else content)
         description = {
-            "study": header,
+            "study": {"title": "Fever in Ashmere", "design": "cohort", "purpose": "association"},
             "variables": VARIABLES,
             "outcome": "fever",
             "exposures": ["exposed"],
-            "covariates": [],
             **keys,
             "data": {"file": file, **keys.get("data", {})},
         }
-        return Described(StudyDescription.model_validate(description), folder / "study.yaml")
+        path = tmp_path / "study.yaml"
+        # Strings are quoted, so that a level such as "yes" stays the word.
+        path.write_text(yaml.safe_dump(description, default_style=None, allow_unicode=True), encoding="utf-8")
+        return load(path, allow_outside=True)
 
     return make

@@ -56,10 +56,7 @@ def audit(
         looks_like_identifier=[
             variable.name
             for variable in in_model
-            if (
-                identifier is not None
-                and (description.variables[variable.name].column or variable.name) == identifier
-            )
+            if (description.variables[variable.name].column or variable.name) == identifier
             or looks_like_identifier(analysis.columns[variable.name])
         ],
         looks_like_date=[

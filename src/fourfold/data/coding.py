@@ -9,6 +9,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass
 from datetime import date, timedelta
+from itertools import pairwise
 from typing import Any
 
 import numpy as np
@@ -43,6 +44,8 @@ class Coded:
         Whether each label occurs in the data.
     source : Arrow array or None
         The text of the cells, for messages.
+    decimal : str
+        Decimal sign of numbers among ``labels``.
     """
 
     name: str
@@ -53,6 +56,7 @@ class Coded:
     listed: int | None = None
     found: tuple[bool, ...] = ()
     source: Any = None
+    decimal: str = "."
 
     @property
     def missing(self) -> Mask:
@@ -76,18 +80,21 @@ def code(name: str, variable: Variable, table: RawTable, missing: Sequence[Scala
         return _quantity(name, values, codes, table.decimal)
     if kind == "date":
         return _date(name, values, codes, table.day_zero)
-    return levelled(name, kind, values, codes, [spelled(level) for level in variable.levels])
+    listed = [spelled(level) for level in variable.levels]
+    return levelled(name, kind, values, codes, listed, table.decimal)
 
 
-def levelled(name: str, kind: str, values: Any, codes: Sequence[str], listed: Sequence[str]) -> Coded:
+def levelled(
+    name: str, kind: str, values: Any, codes: Sequence[str], listed: Sequence[str], decimal: str = "."
+) -> Coded:
     """Code a category, ordered or binary variable by the text of its cells."""
     encoded = text(values).dictionary_encode()
     words: list[str] = encoded.dictionary.to_pylist()
-    absent = {found for code in codes if (found := match(code, words)) is not None}
+    absent = {found for code in codes if (found := match(code, words, decimal)) is not None}
     present = [word for word in words if word not in absent]
     label_of: dict[str, str] = {}
     for level in listed:
-        found = match(level, [word for word in present if word not in label_of])
+        found = match(level, [word for word in present if word not in label_of], decimal)
         if found is not None:
             label_of[found] = level
     others = in_order(word for word in present if word not in label_of)
@@ -106,6 +113,7 @@ def levelled(name: str, kind: str, values: Any, codes: Sequence[str], listed: Se
         labels=tuple(labels),
         listed=len(listed) if listed else None,
         found=tuple(label in occurring for label in labels),
+        decimal=decimal,
     )
 
 
@@ -145,9 +153,13 @@ def _finite(name: str, numbers: Array, unreadable: Mask | None, source: Any) -> 
 def _numbers_of_each_word(words: Any) -> Array:
     """Parse different words once; NaN where one is no number."""
     encoded = words.dictionary_encode()
-    parsed = [_number(word) for word in encoded.dictionary.to_pylist()]
+    return _looked_up(encoded, [_number(word) for word in encoded.dictionary.to_pylist()])
+
+
+def _looked_up(encoded: Any, parsed: list[float]) -> Array:
     indices = pc.fill_null(encoded.indices, len(parsed)).to_numpy(zero_copy_only=False)
-    return np.array([*parsed, np.nan])[indices]
+    values: Array = np.array([*parsed, np.nan])[indices]
+    return values
 
 
 def _number(word: str) -> float:
@@ -183,9 +195,7 @@ def _date(name: str, values: Any, codes: Sequence[str], day_zero: date | None) -
     if codes:
         words = pc.if_else(is_in(words, codes), pa.scalar(None, pa.large_string()), words)
     encoded = words.dictionary_encode()
-    parsed = [days_since_1970(word) for word in encoded.dictionary.to_pylist()]
-    indices = pc.fill_null(encoded.indices, len(parsed)).to_numpy(zero_copy_only=False)
-    days = np.array([*parsed, np.nan])[indices]
+    days = _looked_up(encoded, [days_since_1970(word) for word in encoded.dictionary.to_pylist()])
     unreadable = np.isnan(days) & to_bool(words.is_valid())
     return Coded(name, "date", days, unreadable if unreadable.any() else None, source=words)
 
@@ -220,7 +230,7 @@ def band(name: str, cuts: Sequence[float], labels: Sequence[str], quantity: Code
 def band_labels(cuts: Sequence[float]) -> list[str]:
     """Words for left-closed bands: ``under 50``, ``50 to under 65``, ``65 and over``."""
     shown = [written(cut) for cut in cuts]
-    middle = [f"{low} to under {high}" for low, high in zip(shown, shown[1:], strict=False)]
+    middle = [f"{low} to under {high}" for low, high in pairwise(shown)]
     return [f"under {shown[0]}", *middle, f"{shown[-1]} and over"]
 
 

@@ -30,9 +30,11 @@ def satisfied(condition: Condition, variables: Mapping[str, Coded]) -> Mask:
         If a value is compared that the variable cannot have.
     """
     if condition.all is not None:
-        return np.logical_and.reduce([satisfied(part, variables) for part in condition.all])
+        every: Mask = np.logical_and.reduce([satisfied(part, variables) for part in condition.all])
+        return every
     if condition.any is not None:
-        return np.logical_or.reduce([satisfied(part, variables) for part in condition.any])
+        some: Mask = np.logical_or.reduce([satisfied(part, variables) for part in condition.any])
+        return some
     assert condition.variable is not None
     coded = variables[condition.variable]
     if condition.missing is not None:
@@ -61,7 +63,7 @@ def _equal(coded: Coded, wanted: Sequence[Scalar]) -> Mask:
 
 
 def _place(coded: Coded, level: str) -> int | None:
-    found = match(level, coded.labels)
+    found = match(level, coded.labels, coded.decimal)
     if found is not None:
         return coded.labels.index(found)
     alike = [label for label in coded.labels if label.casefold() == level.casefold()]
@@ -85,11 +87,11 @@ def _scale(coded: Coded, limit: float | date) -> tuple[Array, float]:
         days = [days_since_1970(label) for label in coded.labels]
         numbers, bound = (None if np.isnan(days).any() else days), _as_day(coded, limit)
     else:
-        numbers, bound = numbered(coded.labels), float(limit)
+        numbers, bound = numbered(coded.labels, coded.decimal), float(limit)
     if numbers is None:
         raise DataError(
-            f"an exclusion compares {coded.name} with {spelled_limit(limit)} by `below:` or `above:`, but its values "
-            "are not all numbers or dates.",
+            f"an exclusion compares {coded.name} with {spelled_limit(limit)} by `below:` or `above:`, but "
+            "its values are not all numbers or dates.",
             "Describe it as a quantity or a date, or use `is:` or `in:`.",
         )
     scale = np.array([*numbers, np.nan])
@@ -109,7 +111,7 @@ def _as_number(coded: Coded, value: Scalar | date) -> float:
         return float(value)
     except ValueError:
         raise DataError(
-            f"an exclusion compares {coded.name}, a quantity, with {spelled(value)!r}, which is not a number.",
+            f"an exclusion compares {coded.name}, a quantity, with {spelled(value)!r}, which is no number.",
             "Write a number.",
         ) from None
 

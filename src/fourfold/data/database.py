@@ -83,7 +83,7 @@ def read_duckdb(request: Request) -> Content:
             available = [str(row[0]) for row in described]
             chosen = request.choose(available)
             selected = ", ".join(_quoted(name) for name in chosen)
-            read: Any = connection.execute(f"select {selected} from {_quoted(table)}").to_arrow_table()
+            read: Any = connection.sql(f"select {selected} from {_quoted(table)}").to_arrow_table()
         finally:
             connection.close()
     except duckdb.Error as error:

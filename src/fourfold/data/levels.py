@@ -30,13 +30,16 @@ def is_plain_number(word: str) -> bool:
     return PLAIN_NUMBER.fullmatch(word) is not None
 
 
-def match(level: str, values: Iterable[str]) -> str | None:
-    """The value that ``level`` means, or None."""
+def match(level: str, values: Iterable[str], decimal: str = ".") -> str | None:
+    """The value that ``level`` means, or None; ``decimal`` is the decimal sign of the values."""
     known = list(values)
     if level in known:
         return level
     if is_plain_number(level):
-        equal = [value for value in known if is_plain_number(value) and float(value) == float(level)]
+        pointed = {value: value.replace(decimal, ".") for value in known}
+        equal = [
+            value for value, word in pointed.items() if is_plain_number(word) and float(word) == float(level)
+        ]
         return equal[0] if len(equal) == 1 else None
     if level.casefold() in ("true", "false"):
         alike = [value for value in known if value.casefold() == level.casefold()]
@@ -52,9 +55,9 @@ def in_order(values: Iterable[str]) -> list[str]:
     return sorted(known, key=lambda value: (value.casefold(), value))
 
 
-def numbered(labels: Sequence[str]) -> list[float] | None:
+def numbered(labels: Sequence[str], decimal: str = ".") -> list[float] | None:
     """The labels as numbers, or None if one of them is none."""
     try:
-        return [float(label) for label in labels]
+        return [float(label.replace(decimal, ".")) for label in labels]
     except ValueError:
         return None

@@ -17,8 +17,8 @@ IDENTIFIER_NAME = re.compile(
 )
 DATE_NAME = re.compile(r"(^|[_\s.-])(date|day_of|dob|born|on)($|[_\s.-])|date$|_on$", re.I)
 NEGATIVE = re.compile(
-    r"(no|non?e|not?|n|0|absent|absence|negative|neg|false|f|never|without|free|healthy|well|alive|control|unaffected)"
-    r"([\s_-].*)?|(non|not|no|without)[\s_-].*|.*[\s_-](free|absent|negative)",
+    r"(no|none|not|n|0|absent|absence|negative|neg|false|never|without|free|healthy|well|alive|control|"
+    r"unaffected)([\s_].*)?|(non|not|no|without)[\s_-].*|.*[\s_-](free|absent|negative)",
     re.I,
 )
 

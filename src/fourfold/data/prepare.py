@@ -134,7 +134,7 @@ def _code_all(description: StudyDescription, table: RawTable) -> dict[str, Coded
     for exclusion in description.exclusions:
         for name in named_in(exclusion.where):
             if name not in coded:
-                coded[name] = levelled(name, "category", table.columns[name], codes, [])
+                coded[name] = levelled(name, "category", table.columns[name], codes, [], table.decimal)
     return coded
 
 
@@ -151,8 +151,8 @@ def _counts(description: StudyDescription, table: RawTable) -> NDArray[np.int64]
         shown = ", ".join(f"{table.line_word} {table.lines[place]}" for place in places[:5])
         raise DataError(
             Problem(
-                f"{name} says how many people a row stands for, so each value must be a whole number of 0 or more; "
-                f"{places.size} are not: {shown}.",
+                f"{name} says how many people a row stands for, so each value must be a whole number of 0 or "
+                f"more; {places.size} are not: {shown}.",
                 "Correct the data; a row that stands for nobody has 0.",
                 Position(table.file, int(table.lines[places[0]])),
             )
@@ -239,7 +239,7 @@ def _crude_rows(description: StudyDescription, eligible: Rows) -> dict[str, int 
     known = ~eligible.columns[description.outcome].missing
     return {
         entry.variable: eligible.count(known & ~eligible.columns[entry.variable].missing)
-        for entry in (*description.exposures, *description.predictors, *description.covariates)
+        for entry in (*description.exposures, *description.predictors)
     }
 
 

@@ -47,8 +47,8 @@ def settle(coded: Coded, variable: Variable, kept: Mask, table: RawTable) -> Col
             table,
             f"{coded.name}: the data hold levels that the description does not list: "
             f"{_counts(coded, kept, extra)}; listed are {', '.join(coded.labels[: coded.listed])}.{near}",
-            "Correct the data, add the level to `levels:` if it is real, name it under `missing:` if it means "
-            "'not recorded', or exclude these rows.",
+            "Correct the data, add the level to `levels:` if it is real, name it under `missing:` if it "
+            "means 'not recorded', or exclude these rows.",
         )
     return Column(coded.name, label, coded.kind, values, coded.labels[: coded.listed])
 
@@ -85,7 +85,7 @@ def _binary(coded: Coded, variable: Variable, label: str, kept: Mask, table: Raw
         )
     if not candidates:
         return Column(coded.name, label, "binary", values, ("", ""))
-    present = _present(variable, candidates)
+    present = _present(variable, candidates, coded.decimal)
     if present is None:
         asked = (
             "`present:` is not stated"
@@ -104,18 +104,19 @@ def _binary(coded: Coded, variable: Variable, label: str, kept: Mask, table: Raw
     if len(others) > 1 and len(remaining) == 2:
         return _problem(
             table,
-            f"{coded.name}: `present: {present}` does not occur in the rows left after the exclusions; they hold "
-            f"{_counts(coded, kept)}.",
+            f"{coded.name}: `present: {present}` does not occur in the rows left after the exclusions; they "
+            f"hold {_counts(coded, kept)}.",
             "Check `present:` and the exclusions.",
         )
     absent = others[0] if len(others) == 1 else f"not {present}"
     coded_values = np.where(np.isnan(values), np.nan, (values == coded.labels.index(present)).astype(float))
-    return Column(coded.name, label, "binary", coded_values, (absent, present))
+    shown = present if variable.present is None else spelled(variable.present)
+    return Column(coded.name, label, "binary", coded_values, (absent, shown))
 
 
-def _present(variable: Variable, candidates: list[str]) -> str | None:
+def _present(variable: Variable, candidates: list[str], decimal: str) -> str | None:
     if variable.present is not None:
-        return match(spelled(variable.present), candidates)
+        return match(spelled(variable.present), candidates, decimal)
     yes = [word for word in candidates if word.casefold() in YES]
     return yes[0] if len(yes) == 1 else None
 
@@ -131,8 +132,8 @@ def _unreadable(coded: Coded, bad: Mask, table: RawTable) -> Problem:
     else:
         expected = "a finite number" if table.decimal == "." else "a finite number with a decimal comma"
         advice = (
-            "Correct the data, name a code that means 'not recorded' under `missing:`, call it a category, or state "
-            "`decimal:` under `data:`."
+            "Correct the data, name a code that means 'not recorded' under `missing:`, call it a category, "
+            "or state `decimal:` under `data:`."
         )
     first = int(table.lines[places[0]])
     return Problem(

@@ -103,8 +103,8 @@ def _reference_level(
         if role in MODEL_ROLES and totals[column.levels.index(reference)] == 0:
             others = ", ".join(level for level, total in zip(column.levels, totals, strict=True) if total)
             raise DataError(
-                f"{name}: nobody in the analysis set has the reference level {reference!r}, so nothing can be "
-                f"compared with it; levels with people are {others}.",
+                f"{name}: nobody in the analysis set has the reference level {reference!r}, so nothing can "
+                f"be compared with it; levels with people are {others}.",
                 "Choose another `reference:`.",
             )
         return reference, None
@@ -134,7 +134,8 @@ def _require_positive(name: str, column: Column, rows: Rows) -> None:
     if wrong.size:
         shown = "; ".join(f"line {rows.lines[place]}: {written(column.values[place])}" for place in wrong[:5])
         raise DataError(
-            f"{name}: the shape log2 needs values above 0; {wrong.size} of the analysis set are not: {shown}.",
+            f"{name}: the shape log2 needs values above 0; {wrong.size} in the analysis set are not: "
+            f"{shown}.",
             "Correct the data, name a code that means 'not recorded' under `missing:`, or use another shape.",
         )
 
@@ -146,8 +147,9 @@ def _knots(name: str, shape: SplineShape, column: Column, rows: Rows) -> tuple[f
     lowest, highest = float(column.values.min()), float(column.values.max())
     if stated[0] < lowest or stated[-1] > highest:
         raise DataError(
-            f"{name}: the knots must lie among the values of the analysis set, which run from {written(lowest)} to "
-            f"{written(highest)}; stated are {', '.join(written(knot) for knot in stated)}.",
+            f"{name}: the knots must lie among the values of the analysis set, which run from "
+            f"{written(lowest)} to {written(highest)}; stated are "
+            f"{', '.join(written(knot) for knot in stated)}.",
             "Move the knots inside.",
         )
     return tuple(float(knot) for knot in stated)

@@ -13,6 +13,9 @@ from fourfold.data.nearest import nearest
 from fourfold.data.raw import from_objects
 from fourfold.data.source import Content, Request
 
+DAMAGED = (KeyError, ValueError, TypeError, AttributeError, SyntaxError, EOFError, zipfile.BadZipFile)
+"""What the workbook library raises for files that are not what they should be."""
+
 LARGEST = 1 << 30
 """Bytes a workbook may unpack to; more is taken for a decompression bomb."""
 
@@ -38,15 +41,7 @@ def read(request: Request) -> Content:
         finally:
             book.close()
         _refuse_unsaved_formulas(request, name, rows)
-    except (
-        KeyError,
-        ValueError,
-        TypeError,
-        AttributeError,
-        SyntaxError,
-        EOFError,
-        zipfile.BadZipFile,
-    ) as error:
+    except DAMAGED as error:
         raise request.error(f"the file cannot be read as an xlsx workbook ({error}).") from None
     return content_of(request, rows)
 
@@ -115,7 +110,7 @@ def content_of(request: Request, rows: list[list[Any]]) -> Content:
     filled = [(number, row) for number, row in enumerate(rows, 1) if any(not _blank(cell) for cell in row)]
     if not filled:
         raise request.error("the sheet is empty.", "Check that the right sheet is named.")
-    top, header = filled[0]
+    header = filled[0][1]
     while header and _blank(header[-1]):
         header = header[:-1]
     names = [
