@@ -11,14 +11,25 @@ from dataclasses import dataclass, field
 import numpy as np
 from numpy.typing import NDArray
 
+from fourfold.models.blocks import aligned
 from fourfold.models.centring import Centring, centring
 from fourfold.models.lanes import THREADS_PAY_FROM, over_lanes
-from fourfold.models.likelihood import Chunk, Observed, Part, aligned
+from fourfold.models.likelihood import Chunk, Observed, Part
 
 Array = NDArray[np.float64]
 
 CHUNK_NUMBERS = 32_768
 """Numbers of one scratch matrix: four of them and the design's chunk stay in the second-level cache."""
+
+
+GROUP_NUMBERS = 250_000
+"""Numbers in the information matrices of the points taken together, to bound memory."""
+
+
+def groups(k: int, p: int) -> list[slice]:
+    """Split k points of p coefficients into groups whose information matrices fit in memory."""
+    together = max(1, GROUP_NUMBERS // (p * p))
+    return [slice(start, min(k, start + together)) for start in range(0, k, together)]
 
 
 @dataclass(slots=True)

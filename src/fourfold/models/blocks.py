@@ -17,6 +17,14 @@ Array = NDArray[np.float64]
 WIDTH = 4096
 
 
+def aligned(*shape: int) -> Array:
+    """Uninitialised array on a cache line: vector instructions run a third slower across lines."""
+    size = int(np.prod(shape))
+    memory = np.empty(size + 8)
+    start = (-memory.ctypes.data % 64) // 8
+    return memory[start : start + size].reshape(shape)
+
+
 @dataclass(frozen=True, slots=True)
 class Blocks:
     """A design matrix as blocks of columns.
@@ -46,7 +54,8 @@ class Blocks:
         n, p = matrix.shape
         width = max(1, min(width, n))
         n_blocks = max(1, -(-n // width))
-        array = np.zeros((n_blocks, p, width))
+        array = aligned(n_blocks, p, width)
+        array[-1] = 0.0
         for block in range(n_blocks):
             rows = matrix[block * width : (block + 1) * width]
             array[block, :, : len(rows)] = rows.T

@@ -11,7 +11,8 @@ from dataclasses import dataclass, field
 import numpy as np
 from numpy.typing import NDArray
 
-from fourfold.models.blocks import Blocks
+from fourfold.models.blocks import Blocks, aligned
+from fourfold.models.engine import choose, compiled_pass
 from fourfold.models.lanes import THREADS_PAY_FROM, over_lanes
 
 Array = NDArray[np.float64]
@@ -55,6 +56,16 @@ class Observed:
     @property
     def events(self) -> float:
         return float(self.event.sum() if self.counts is None else self.counts[self.event].sum())
+
+    def size_of(self, part: Part) -> tuple[int, int]:
+        """Rows of a part, and rows of it with the event."""
+        rows = events = 0
+        for block in range(0, self.blocks.n_blocks, part.stride):
+            first = block * self.blocks.width
+            here = self.event[first : first + min(part.rows, self.blocks.rows_in(block))]
+            rows += len(here)
+            events += int(here.sum())
+        return rows, events
 
     def chunks(self, blocks: range, part: Part) -> Iterator[Chunk]:
         """Chunks of the given blocks that fit the cache."""
@@ -116,14 +127,6 @@ def chunk_width(blocks: Blocks) -> int:
     """Rows of a chunk: a whole block, or fewer if there are many columns."""
     fitting = CACHE_NUMBERS // max(1, blocks.p) // TILE * TILE
     return min(blocks.width, max(TILE, fitting))
-
-
-def aligned(*shape: int) -> Array:
-    """Uninitialised array on a cache line: vector instructions run a third slower across lines."""
-    size = int(np.prod(shape))
-    memory = np.empty(size + 8)
-    start = (-memory.ctypes.data % 64) // 8
-    return memory[start : start + size].reshape(shape)
 
 
 @dataclass(slots=True)
@@ -220,17 +223,23 @@ class LogLikelihood:
         Taken off every column first.
     part : Part or None
         None for all rows.
+    engine : str
+        ``numpy``, ``compiled`` or ``auto``; centred columns are always summed by numpy.
     """
 
     observed: Observed
     centre: Array | None = None
     part: Part | None = None
+    engine: str = "numpy"
 
     def __call__(self, coefficients: Array, information: bool = True) -> Sums:
         """Log-likelihood, gradient and, unless it is not wanted, information."""
         blocks = self.observed.blocks
         part = self.part if self.part is not None else Part(blocks.width)
         p, width = blocks.p, chunk_width(blocks)
+        numbers = part.rows * blocks.n_blocks // part.stride * p
+        threads = 1 if numbers < THREADS_PAY_FROM else None
+        compiled = choose(self.engine, blocks.n * p) and self.centre is None
 
         def lane(these: range, work: Workspace) -> Sums:
             sums = Sums.zero(p)
@@ -238,9 +247,32 @@ class LogLikelihood:
                 add_chunk(sums, chunk, coefficients, self.centre, work, information)
             return sums
 
-        numbers = part.rows * blocks.n_blocks // part.stride * p
-        threads = 1 if numbers < THREADS_PAY_FROM else None
         total = Sums.zero(p)
-        for sums in over_lanes(lane, blocks.n_blocks, lambda: Workspace(p, width), threads=threads):
+        if compiled:
+            lanes = self._compiled_lanes(coefficients, information, part, threads)
+        else:
+            lanes = over_lanes(lane, blocks.n_blocks, lambda: Workspace(p, width), threads=threads)
+        for sums in lanes:
             total.add(sums)
         return total
+
+    def _compiled_lanes(
+        self, coefficients: Array, information: bool, part: Part, threads: int | None
+    ) -> list[Sums]:
+        blocks = self.observed.blocks
+        add_blocks = compiled_pass()
+        counts = np.empty(0, dtype=np.int64) if self.observed.counts is None else self.observed.counts
+        offset = np.empty(0) if self.observed.offset is None else self.observed.offset
+        array = np.ascontiguousarray(blocks.array)
+
+        def lane(these: range, _: None) -> Sums:
+            sums = Sums.zero(blocks.p)
+            sums.log_likelihood = add_blocks(
+                array, blocks.n, these.start, these.stop, part.rows, part.stride, self.observed.event,
+                counts, offset, coefficients, information, sums.gradient, sums.information,
+            )  # fmt: skip
+            lower = np.tril(sums.information)
+            sums.information = lower + np.tril(lower, -1).T
+            return sums
+
+        return over_lanes(lane, blocks.n_blocks, lambda: None, threads=threads)

@@ -12,6 +12,7 @@ from fourfold.models.blocks import Blocks
 from fourfold.models.centring import Centring, centring, constant_column
 from fourfold.models.likelihood import LogLikelihood, Observed, Part
 from fourfold.models.newton import ITERATIONS, Curvature, Optimum, maximise
+from fourfold.models.triangle import triangular_factor
 
 Array = NDArray[np.float64]
 Counts = NDArray[np.int64] | NDArray[np.float64]
@@ -21,6 +22,12 @@ WARM_FROM = 50_000
 
 PART = 16
 """The part is one row in so many."""
+
+EVENTS_PER_COLUMN = 5
+"""Rows with, and rows without the event, needed too."""
+
+NEARLY_DEPENDENT = 1e-6
+"""Pivots of the scaled information below this cost more digits than an answer should lose."""
 
 ROWS_PER_COLUMN = 100
 """Rows of the part needed for each column: with few, its estimate is a worse start than none."""
@@ -101,7 +108,7 @@ def fit(
     observed = Observed(blocks, event, counts, offset)
     check_contrast(observed)
     centred = centring(blocks)
-    optimum = climb(observed, centred, start)
+    optimum = climb(observed, centred, start, engine=engine)
     if optimum.iterations == 1 and np.isnan(optimum.decrement):
         raise EstimationError(
             "No estimate exists: some columns of the model can be computed from the others.",
@@ -111,10 +118,15 @@ def fit(
 
 
 def climb(
-    observed: Observed, centred: Centring | None, start: Array | None = None, iterations: int = ITERATIONS
+    observed: Observed,
+    centred: Centring | None,
+    start: Array | None = None,
+    *,
+    iterations: int = ITERATIONS,
+    engine: str = "auto",
 ) -> Optimum:
     """The maximum in terms of the centred columns, from a start on the user's scale."""
-    evaluate = LogLikelihood(observed, None if centred is None else centred.centre)
+    evaluate = LogLikelihood(observed, None if centred is None else centred.centre, engine=engine)
     if start is None:
         first = _start(observed, evaluate)
     else:
@@ -148,9 +160,12 @@ def _start(observed: Observed, evaluate: LogLikelihood) -> Array:
     part = _part(observed.blocks)
     if part is None:
         return cold
-    share_of_rows = observed.blocks.n / (part.rows * -(-observed.blocks.n_blocks // part.stride))
+    rows, events = observed.size_of(part)
+    if min(events, rows - events) < EVENTS_PER_COLUMN * observed.blocks.p:
+        return cold
+    share_of_rows = observed.blocks.n / rows
     approach = maximise(
-        LogLikelihood(observed, evaluate.centre, part),
+        LogLikelihood(observed, evaluate.centre, part, evaluate.engine),
         cold,
         observed.people / share_of_rows,
         enough=0.1,
@@ -192,10 +207,8 @@ def _approach(evaluate: LogLikelihood, start: Array, curvature: Curvature, peopl
 
 def finished(observed: Observed, optimum: Optimum, centred: Centring | None) -> Fit:
     """The fit at an optimum, back on the scale of the user's columns."""
-    curvature = Curvature.of(optimum.sums.information)
-    p = observed.blocks.p
-    covariance = np.full((p, p), np.nan) if curvature is None else curvature.inverse()
     coefficients = optimum.coefficients
+    covariance = _covariance(observed, optimum, centred)
     if centred is not None:
         coefficients = centred.outward(coefficients)
         covariance = centred.outward_covariance(covariance)
@@ -210,6 +223,40 @@ def finished(observed: Observed, optimum: Optimum, centred: Centring | None) -> 
         iterations=optimum.iterations,
         decrement=optimum.decrement,
     )
+
+
+def _covariance(observed: Observed, optimum: Optimum, centred: Centring | None) -> Array:
+    """Inverse information in terms of the centred columns.
+
+    Where columns are nearly dependent, the information has lost digits that the rows still have:
+    then it is rebuilt from the triangular factor of the weighted rows.
+    """
+    information = optimum.sums.information
+    curvature = Curvature.of(information)
+    if curvature is not None and curvature.smallest_pivot > NEARLY_DEPENDENT:
+        return curvature.inverse()
+    diagonal = np.diagonal(information)
+    if not bool(np.all(diagonal > 0)):
+        return np.full(information.shape, np.nan)
+    blocks = observed.blocks
+    outer = optimum.coefficients if centred is None else centred.outward(optimum.coefficients)
+
+    def root_weight(block: int) -> Array:
+        rows = slice(block * blocks.width, block * blocks.width + blocks.rows_in(block))
+        eta = outer @ blocks.array[block, :, : blocks.rows_in(block)]
+        if observed.offset is not None:
+            eta = eta + observed.offset[rows]
+        smaller = np.exp(-np.abs(eta))
+        root = np.sqrt(smaller) / (1 + smaller)
+        return np.asarray(root if observed.counts is None else root * np.sqrt(observed.counts[rows]))
+
+    scale = 1 / np.sqrt(diagonal)
+    factor = triangular_factor(blocks, centred, scale, root_weight)
+    try:
+        half = np.linalg.inv(factor) * scale[:, None]
+    except np.linalg.LinAlgError:
+        return np.full(information.shape, np.nan)
+    return np.asarray(half @ half.T)
 
 
 def null_log_likelihood(observed: Observed) -> float:

@@ -33,12 +33,12 @@ class Curvature:
         diagonal = np.diagonal(information)
         if not bool(np.all(diagonal > 0) and np.all(np.isfinite(information))):
             return None
-        scale: Array = np.asarray(1 / np.sqrt(diagonal))
+        scale = np.asarray(1 / np.sqrt(diagonal), dtype=np.float64)
         try:
-            factor: Array = np.linalg.cholesky(information * scale[:, None] * scale)
+            factor = np.linalg.cholesky(information * scale[:, None] * scale)
         except np.linalg.LinAlgError:
             return None
-        return cls(scale, factor)
+        return cls(scale, np.asarray(factor, dtype=np.float64))
 
     def whiten(self, vector: Array) -> Array:
         """L^-1 D v: its square is v' I^-1 v."""

@@ -8,7 +8,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from fourfold.models.batch import Standardised
+from fourfold.models.batch import Standardised, groups
 from fourfold.models.blocks import Blocks
 from fourfold.models.bracketing import constrained_maximum, limit_by_bracketing, limit_of_unbounded
 from fourfold.models.likelihood import Observed
@@ -168,7 +168,11 @@ def _both_limits(observed: Observed, fit: Fit, contrasts: Array, confidence: flo
     along = both @ covariance
     along /= np.sqrt(np.einsum("kj,kj->k", along, both))[:, None]
     start = centre + sides[:, None] * np.sqrt(2 * drop) * along
-    values, settled = _advance(standardised, centre, start, both, sides, target)
+    values, settled = np.empty(2 * m), np.empty(2 * m, dtype=bool)
+    for together in groups(2 * m, observed.blocks.p):
+        values[together], settled[together] = _advance(
+            standardised, centre, start[together], both[together], sides[together], target
+        )
     for place in np.flatnonzero(~settled):
         values[place] = limit_by_bracketing(standardised, centre, both[place], float(sides[place]), target)
     return values[:m], values[m:]

@@ -8,7 +8,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from fourfold.models.batch import Standardised
+from fourfold.models.batch import Standardised, groups
 from fourfold.models.blocks import Blocks
 from fourfold.models.centring import centring
 from fourfold.models.likelihood import Observed
@@ -70,7 +70,10 @@ def likelihood_ratio(
     if not dropped:
         return []
     if bool(np.isfinite(fit.coefficients).all()):
-        reduced = _reduced_together(Observed(blocks, event, counts, offset), fit, dropped)
+        observed = Observed(blocks, event, counts, offset)
+        reduced = []
+        for together in groups(len(dropped), blocks.p):
+            reduced += _reduced_together(observed, fit, dropped[together])
     else:
         reduced = [_supremum_without(blocks, event, columns, counts) for columns in dropped]
     return [
@@ -104,8 +107,7 @@ def _reduced_together(observed: Observed, fit: Fit, dropped: Sequence[tuple[int,
     The curvature is computed once, near the optimum, and again only for models that settle slowly.
     """
     p = observed.blocks.p
-    # On the user's own columns "zero" must stay zero, so the intercept takes up no centring here
-    # unless it is itself what is dropped: then the plain columns are used.
+    # The intercept of centred columns is another one: a model without intercept is fitted alone.
     standardised = Standardised.of(observed, fit.covariance)
     centre = standardised.inward(fit.coefficients)
     covariance = standardised.inward_covariance(fit.covariance)
