@@ -17,6 +17,10 @@ Integers = NDArray[np.int64]
 CHUNK = 65_536
 # Below this much arithmetic a pass, every refit has its own exact information matrix.
 SMALL = 20_000_000
+# Below this, one last pass for the exact information at the end is worth its time.
+AFFORDABLE = 1_000_000_000
+# A standard error a hundred times that of the whole fit: without this person the data separate.
+LEAST_INFORMATION = 1e-4
 
 
 @dataclass(frozen=True, slots=True)
@@ -73,14 +77,23 @@ def refit_without(
         done = (decrement >= 0) & (decrement < 1e-16)
         if done.all():
             break
-    _, final = _pass(X, event, people, offset, rows, b, True) if exact else (None, held)
-    covariances = _inverse(final)
-    errors = np.sqrt(np.einsum("rii->ri", covariances))
-    whole = np.sqrt(np.diag(np.linalg.inv(information)))
-    # An error a hundred times that of the whole fit: without this person the data separate.
-    done &= np.all(errors < 100 * whole, axis=1)
-    b[~done], covariances[~done] = np.nan, np.nan
+    exact = rows.size * X.shape[0] * p * p <= AFFORDABLE
+    final = _pass(X, event, people, offset, rows, b, True)[1] if exact else held
+    done &= _determined(final, information)
+    covariances = np.full_like(final, np.nan)
+    covariances[done] = np.linalg.inv(final[done])
+    b[~done] = np.nan
     return Refits(b, covariances, done)
+
+
+def _determined(final: Array, information: Array) -> NDArray[np.bool_]:
+    """Is there a finite estimate: does every direction keep some of the whole fit's information?"""
+    half = np.linalg.inv(np.linalg.cholesky(information))
+    relative = half @ final @ half.T
+    finite = np.isfinite(relative).all(axis=(1, 2))
+    least = np.zeros(finite.size)
+    least[finite] = np.linalg.eigvalsh(relative[finite])[:, 0]
+    return np.asarray(least > LEAST_INFORMATION)
 
 
 def _weight(x: Array, offset: Array, b: Array) -> Array:
@@ -116,10 +129,3 @@ def _solve(matrices: Array, right: Array) -> Array:
         return np.asarray(np.linalg.solve(matrices, right[:, :, None])[:, :, 0])
     except np.linalg.LinAlgError:
         return np.asarray(np.einsum("rij,rj->ri", np.linalg.pinv(matrices, hermitian=True), right))
-
-
-def _inverse(matrices: Array) -> Array:
-    try:
-        return np.asarray(np.linalg.inv(matrices), dtype=np.float64)
-    except np.linalg.LinAlgError:
-        return np.asarray(np.linalg.pinv(matrices, hermitian=True), dtype=np.float64)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -20,8 +21,10 @@ DEGREE = 2
 FEWEST_RISKS = 5
 # Above this many distinct risks the work would grow with their square.
 MOST_RISKS = 1_500
+# At either end this many distinct risks stay as they are: the curve bends most on them.
+OUTERMOST = 50
 METHOD = "local quadratic regression of the outcome on fitted risk, span 0.75"
-METHOD_GATHERED = METHOD + ", fitted risks first gathered into 1,500 groups of equal size"
+METHOD_GATHERED = METHOD + ", fitted risks but the outermost first gathered into 1,500 groups of equal size"
 METHOD_NONE = "no smooth curve: fewer than five distinct fitted risks"
 
 
@@ -75,7 +78,7 @@ def smooth_curve(
     low, high = found.quantiles([0.01, 0.99])
     everyone, method = found, METHOD
     if found.values.size > MOST_RISKS:
-        found, method = found.gathered(MOST_RISKS), METHOD_GATHERED
+        found, method = _gathered(found), METHOD_GATHERED
     smoothed = np.clip(local_regression(found, found.values, SPAN, DEGREE).fitted, 0.0, 1.0)
     ici, e50, e90, emax = _distances(everyone, found, smoothed)
     curve: list[tree.CurvePoint] = []
@@ -96,15 +99,24 @@ def smooth_curve(
     return SmoothCalibration(curve, method, ici=ici, e50=e50, e90=e90, emax=emax)
 
 
+def _gathered(found: Tally) -> Tally:
+    inner = slice(OUTERMOST, -OUTERMOST)
+    middle = Tally(found.values[inner], found.people[inner], found.events[inner]).gathered(MOST_RISKS)
+
+    def joined(outer: NDArray[Any], within: NDArray[Any]) -> NDArray[Any]:
+        return np.concatenate([outer[:OUTERMOST], within, outer[-OUTERMOST:]])
+
+    return Tally(
+        joined(found.values, middle.values),
+        joined(found.people, middle.people),
+        joined(found.events, middle.events),
+    )
+
+
 def _distances(everyone: Tally, found: Tally, smoothed: Array) -> tuple[float, float, float, float]:
     """Mean, median, 90th percentile and largest distance, over people."""
-    if everyone is not found:
-        # Between groups the curve is read off a straight line; beyond them it is computed.
-        ends = everyone.values[[0, -1]]
-        low, high = np.clip(local_regression(found, ends, SPAN, DEGREE).fitted, 0.0, 1.0)
-        at = np.concatenate([ends[:1], found.values, ends[1:]])
-        smoothed = np.interp(everyone.values, at, np.concatenate([[low], smoothed, [high]]))
-    distance = np.abs(everyone.values - smoothed)
+    # Between groups the curve is read off a straight line.
+    distance = np.abs(everyone.values - np.interp(everyone.values, found.values, smoothed))
     spread = tally(distance, np.zeros(distance.size, dtype=bool), everyone.people)
     e50, e90 = spread.quantiles([0.5, 0.9])
     mean = float(distance @ everyone.people / everyone.total)
