@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterator
+
 from fourfold.description.agreement_conditions import check_exclusions
 from fourfold.description.agreement_roles import check_roles
 from fourfold.description.agreement_variables import check_variables
@@ -10,10 +12,8 @@ from fourfold.description.node import Positions
 from fourfold.errors import Problem
 
 
-def disagreements(parts: Legible, positions: Positions) -> list[Problem]:
+def disagreements(parts: Legible, positions: Positions) -> Iterator[Problem]:
     """Everything in one part that another part contradicts, at its position."""
-    return [
-        *check_variables(parts, positions),
-        *check_roles(parts, positions),
-        *check_exclusions(parts, positions),
-    ]
+    yield from check_variables(parts, positions)
+    yield from check_roles(parts, positions)
+    yield from check_exclusions(parts, positions)

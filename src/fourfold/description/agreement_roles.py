@@ -4,12 +4,13 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
-from fourfold.description.agreement_variables import kind_of
+from fourfold.description.agreement_variables import kind_of, names_of
 from fourfold.description.legible import Legible, RoleAt
 from fourfold.description.node import Path, Positions
 from fourfold.description.wording import did_you_mean, quoted
 from fourfold.errors import Problem
 
+_MODEL_KINDS = ("quantity", "category", "ordered", "binary", "bands")
 _SINGULAR = {"exposures": "an exposure", "predictors": "a predictor", "covariates": "a covariate"}
 
 
@@ -47,8 +48,7 @@ def _outcome(parts: Legible, positions: Positions) -> Iterator[Problem]:
         return
     where = positions.find("outcome")
     if outcome not in variables:
-        binary = [name for name, part in variables.items() if kind_of(part) == "binary"]
-        yield _not_described("outcome", outcome, parts, ("outcome",), positions, binary)
+        yield _not_described("outcome", outcome, parts, ("outcome",), positions, ("binary",))
     elif kind_of(variables[outcome]) not in (None, "binary"):
         kind = kind_of(variables[outcome])
         found = "bands" if kind == "bands" else f"kind: {kind}"
@@ -70,22 +70,20 @@ def _purpose(parts: Legible, positions: Positions) -> Iterator[Problem]:
     wanted, unwanted = (
         ("exposures", "predictors") if purpose == "association" else ("predictors", "exposures")
     )
-    if positions.node(wanted) is None or lists.get(wanted) == 0:
-        hint = f"Write {wanted}: and the variables' names in brackets."
-        if lists.get(unwanted):
-            hint = f"Rename `{unwanted}:` to `{wanted}:`, or change `purpose:`."
+    missing = positions.node(wanted) is None or lists.get(wanted) == 0
+    if missing and not lists.get(unwanted):
         meaning = (
             "whose odds ratios answer the question" if wanted == "exposures" else "that foretell the outcome"
         )
         yield Problem(
             f"purpose: {purpose} needs `{wanted}:`, the variables {meaning}.",
-            hint,
+            f"Write `{wanted}:` and the variables' names in brackets.",
             positions.find(wanted) if positions.node(wanted) else positions.find("study", "purpose"),
         )
     if lists.get(unwanted):
         yield Problem(
             f"`{unwanted}` does not go with purpose: {purpose}.",
-            f"Use `{wanted}:`, or change `purpose:` under `study:`.",
+            f"{'Rename it to' if missing else 'Use'} `{wanted}:`, or change `purpose:` under `study:`.",
             positions.key(unwanted),
         )
     if purpose == "prediction" and lists.get("covariates"):
@@ -101,8 +99,7 @@ def _member(at: RoleAt, parts: Legible, positions: Positions) -> Iterator[Proble
     if parts.variables is None:
         return
     if at.name not in parts.variables:
-        free = [name for name, part in parts.variables.items() if kind_of(part) != "date"]
-        yield _not_described(at.role, at.name, parts, at.path, positions, free)
+        yield _not_described(at.role, at.name, parts, at.path, positions, _MODEL_KINDS)
     elif kind_of(parts.variables[at.name]) == "date":
         yield Problem(
             f"{quoted(at.name)} is a date; dates never enter a model.",
@@ -115,9 +112,8 @@ def _follow_up(parts: Legible, positions: Positions) -> Iterator[Problem]:
     if parts.follow_up is None or parts.variables is None or parts.follow_up.section.variable is None:
         return
     name, path = parts.follow_up.section.variable, ("follow_up", "variable")
-    quantities = [known for known, part in parts.variables.items() if kind_of(part) == "quantity"]
     if name not in parts.variables:
-        yield _not_described("follow_up.variable", name, parts, path, positions, quantities)
+        yield _not_described("follow_up.variable", name, parts, path, positions, ("quantity",))
     elif kind_of(parts.variables[name]) not in (None, "quantity"):
         yield Problem(
             f"{quoted(name)} under `follow_up:` is no quantity; a length of follow-up is one.",
@@ -127,14 +123,14 @@ def _follow_up(parts: Legible, positions: Positions) -> Iterator[Problem]:
 
 
 def _not_described(
-    key: str, name: str, parts: Legible, path: Path, positions: Positions, candidates: list[str]
+    key: str, name: str, parts: Legible, path: Path, positions: Positions, kinds: tuple[str, ...]
 ) -> Problem:
     variables = parts.variables or {}
     by_column = [
         known for known, part in variables.items() if part is not None and part.section.column == name
     ]
     hint = f"Its name in the description is '{by_column[0]}'." if by_column else ""
-    hint = hint or did_you_mean(name, candidates) or did_you_mean(name, variables)
+    hint = hint or did_you_mean(name, names_of(parts, *kinds)) or did_you_mean(name, variables)
     return Problem(
         f"`{key}` names {quoted(name)}, which is not a described variable.",
         hint or "Describe it under `variables:`.",

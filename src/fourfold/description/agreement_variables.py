@@ -18,14 +18,13 @@ _ONLY_FOR: dict[str, tuple[str, ...]] = {
     "plausible": ("quantity",),
     "shape": ("quantity",),
     "compare": ("quantity",),
-    "levels": ("category", "ordered"),
+    "levels": ("category", "ordered", "binary"),
     "reference": ("category", "ordered", "quantity", "bands"),
     "expected": ("quantity", "category", "ordered", "binary", "bands"),
     "column": ("quantity", "category", "ordered", "binary", "date"),
     "missing": ("quantity", "category", "ordered", "binary", "date"),
 }
 _INSTEAD = {
-    ("levels", "binary"): "Name the value that means yes by `present:`; the other is the reference.",
     ("reference", "binary"): "The other value than `present:` is the reference.",
     ("levels", "quantity"): "To compare groups of a quantity, describe bands by `from:` and `cut:`.",
     ("levels", "bands"): "The bands follow from `cut:`.",
@@ -44,8 +43,15 @@ def kind_of(part: Part[Variable] | None) -> str | None:
     return part.section.kind
 
 
+def names_of(parts: Legible, *kinds: str) -> list[str]:
+    """The described variables of these kinds."""
+    return [name for name, part in (parts.variables or {}).items() if kind_of(part) in kinds]
+
+
 def check_variables(parts: Legible, positions: Positions) -> Iterator[Problem]:
     """Problems inside single variables."""
+    everywhere = parts.data.section.missing if parts.data and "missing" not in parts.data.wrong else []
+    codes = frozenset(code for code in everywhere if code)
     for name, part in (parts.variables or {}).items():
         if name == "(intercept)":
             yield Problem(
@@ -56,7 +62,7 @@ def check_variables(parts: Legible, positions: Positions) -> Iterator[Problem]:
         if part is not None:
             yield from _kind(name, part, positions)
             yield from _bands(name, part, parts, positions)
-            yield from _values(name, part, parts, positions)
+            yield from _values(name, part, codes, positions)
             yield from _dated(name, part, parts, positions)
 
 
@@ -77,11 +83,18 @@ def _kind(name: str, part: Part[Variable], positions: Positions) -> Iterator[Pro
             'Write the value as it stands in the data, as in present: "yes".',
             positions.find("variables", name),
         )
-    if kind == "ordered" and not part.given("levels"):
+    levels = variable.levels
+    if kind == "binary" and levels and len(levels) != 2:
         yield Problem(
-            f"Ordered variable {shown} has no `levels:`, so that nobody knows its order.",
-            "List them from lowest to highest, as in levels: [low, middle, high].",
-            positions.find("variables", name),
+            f"Binary variable {shown} lists {len(levels)} levels; a binary variable has two.",
+            "Write kind: category, or name the values that mean 'not recorded' under `missing:`.",
+            positions.find("variables", name, "levels"),
+        )
+    elif kind == "binary" and levels and variable.present is not None and variable.present not in levels:
+        yield Problem(
+            f"`present` is {quoted(variable.present)}, which is not among the levels of {shown}.",
+            did_you_mean(variable.present, levels) or f"Write {quoted(levels[0])} or {quoted(levels[1])}.",
+            positions.find("variables", name, "present"),
         )
     for key, kinds in _ONLY_FOR.items():
         if part.given(key) and kind not in kinds:
@@ -95,7 +108,7 @@ def _kind(name: str, part: Part[Variable], positions: Positions) -> Iterator[Pro
     if kind == "quantity" and "per" in variable.model_fields_set and not part.wrong & {"per", "shape"}:
         advice = {
             "log2": "An odds ratio of a log2 quantity is per doubling.",
-            "quadratic": "A curve has no odds ratio per step; name pairs of values by `compare:`.",
+            "quadratic": "A curve has no one odds ratio per step; name pairs of values by `compare:`.",
         }
         named = "spline" if isinstance(shape, SplineShape) else shape
         if named != "linear":
@@ -139,11 +152,11 @@ def _bands(name: str, part: Part[Variable], parts: Legible, positions: Positions
     if source is None or parts.variables is None:
         return
     where = positions.find("variables", name, "from")
-    quantities = [other for other, known in parts.variables.items() if kind_of(known) == "quantity"]
     if source not in parts.variables:
         yield Problem(
             f"`from` names {quoted(source)}, which is not a described variable.",
-            did_you_mean(source, quantities) or "Describe it under `variables:` as a quantity.",
+            did_you_mean(source, names_of(parts, "quantity"))
+            or "Describe it under `variables:` as a quantity.",
             where,
         )
         return
@@ -161,7 +174,6 @@ def _dated(name: str, part: Part[Variable], parts: Legible, positions: Positions
     date = part.section.dated_by
     if date is None or parts.variables is None:
         return
-    dates = [other for other, known in parts.variables.items() if kind_of(known) == "date"]
     if date not in parts.variables:
         what = f"`dated_by` names {quoted(date)}, which is not a described variable."
     elif kind_of(parts.variables[date]) not in (None, "date"):
@@ -170,12 +182,14 @@ def _dated(name: str, part: Part[Variable], parts: Legible, positions: Positions
         return
     yield Problem(
         what,
-        did_you_mean(date, dates) or "Name a variable that is described with kind: date.",
+        did_you_mean(date, names_of(parts, "date")) or "Name a variable that is described with kind: date.",
         positions.find("variables", name, "dated_by"),
     )
 
 
-def _values(name: str, part: Part[Variable], parts: Legible, positions: Positions) -> Iterator[Problem]:
+def _values(
+    name: str, part: Part[Variable], everywhere: frozenset[str], positions: Positions
+) -> Iterator[Problem]:
     variable, kind = part.section, kind_of(part)
     levels, reference = variable.levels, variable.reference
     if kind in ("category", "ordered") and levels and reference is not None and reference not in levels:
@@ -194,14 +208,14 @@ def _values(name: str, part: Part[Variable], parts: Legible, positions: Position
                 "Correct the one that is wrong.",
                 positions.find("variables", name, "reference"),
             )
-    everywhere = parts.data.section.missing if parts.data and "missing" not in parts.data.wrong else []
-    codes = {code for code in (*variable.missing, *everywhere) if code}
+    own = set(variable.missing)
     for key, values in (("levels", levels), ("present", [variable.present])):
         for place, value in enumerate(values):
-            if value in codes:
+            if value in own or value in everywhere:
+                place_of_code = "the variable's `missing:`" if value in own else "`missing:` under `data:`"
                 yield Problem(
                     f"{quoted(str(value))} is under `{key}:` of {quoted(name)} and is also a code for "
                     "'not recorded'.",
-                    "Remove it from `missing:` if it is a real value, otherwise from here.",
+                    f"If it is a real value, write {place_of_code} without it; otherwise remove it here.",
                     positions.find("variables", name, key, place),
                 )

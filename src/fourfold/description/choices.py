@@ -41,8 +41,8 @@ class FollowUp(Section):
     """Whether everybody was watched for as long, and when the exposure was known."""
 
     statement: list[Literal["equal", "unequal", "censored", "competing events"]] = key(
-        "What is known about the follow-up: equal; or one or more of unequal, censored and competing "
-        "events, each of which makes an odds ratio doubtful and gives a finding.",
+        "What is known about the lengths of follow-up. Unequal follow-up, censoring and competing events "
+        "each make an odds ratio doubtful, and a finding says so.",
         example="follow_up: {statement: [unequal, censored]}",
         factory=list,
         otherwise="The report says that it is not stated.",

@@ -17,7 +17,8 @@ from fourfold.description.wording import quoted
 from fourfold.errors import DescriptionError, Position, Problem
 
 DEEPEST = 40
-MOST_VALUES = 50_000
+MOST_VALUES = 20_000
+STANDARD_TAG = "tag:yaml.org,2002:"
 QUOTE_IT = "If it is part of a text, put the text in quotation marks."
 
 
@@ -116,9 +117,10 @@ class _Composer:
             self.take()
         tag = getattr(event, "tag", None)
         if tag is not None:
+            shown = quoted(tag.replace(STANDARD_TAG, "!!"))
             self._note(
                 event,
-                f"The tag {quoted(tag)} stands here; a description may not use tags (`!`).",
+                f"The tag {shown} stands here; a description may not use tags (`!`).",
                 f"Remove it; what a value means follows from its key. {QUOTE_IT}",
             )
             return self._refused(event)

@@ -9,7 +9,17 @@ from pydantic import field_validator, model_validator
 
 from fourfold.description.scalars import Code, Day, Text, refusal
 from fourfold.description.section import Section, key
-from fourfold.description.wording import quoted
+from fourfold.description.wording import listed, quoted
+
+_DELIMITERS = {
+    "comma": ",",
+    "semicolon": ";",
+    "tab": "\t",
+    "bar": "|",
+    ",": ",",
+    ";": ";",
+    "|": "|",
+}
 
 
 class Period(Section):
@@ -118,7 +128,7 @@ class DataSource(Section):
         otherwise='An empty cell and NA, that is ["", NA].',
     )
     delimiter: Text | None = key(
-        "The character between the columns of a text file: one character, or the word tab.",
+        "What stands between the columns of a text file: a comma, semicolon, tab or bar.",
         example='data: {file: wound-infection.csv, delimiter: ";"}',
         default=None,
         otherwise="It is found from the file's first lines.",
@@ -138,21 +148,18 @@ class DataSource(Section):
 
     @field_validator("delimiter", mode="before")
     @classmethod
-    def _one_character(cls, value: object) -> object:
-        if value == "tab" or value == "\t":
-            return "tab"
-        return value
+    def _tab(cls, value: object) -> object:
+        return "tab" if value == "\t" else value
 
     @field_validator("delimiter", mode="after")
     @classmethod
     def _as_character(cls, value: str | None) -> str | None:
-        if value == "tab":
-            return "\t"
-        if value is not None and len(value) != 1:
+        if value is not None and value not in _DELIMITERS:
             raise refusal(
-                f"expects one character, found {quoted(value)}.", 'Write it as ";", or write the word tab.'
+                f"expects {listed(_DELIMITERS)}; found {quoted(value)}.",
+                'Write the word, or the character in quotation marks, as in ";".',
             )
-        return value
+        return _DELIMITERS[value] if value is not None else None
 
     @field_validator("encoding", mode="after")
     @classmethod

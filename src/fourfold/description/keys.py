@@ -11,6 +11,7 @@ from typing import Any
 import yaml
 
 from fourfold.description import later
+from fourfold.description.json_schema import without_python
 from fourfold.description.model import StudyDescription
 from fourfold.description.outline import NAME, Key, Pattern, below, outline
 from fourfold.description.wording import listed, nearest, quoted
@@ -62,13 +63,11 @@ def explain(key: str | None) -> str:
     word = key.strip().strip(":`'\"").replace(":", ".").strip(".")
     found = _named(word)
     if found:
-        return "\n\n".join(_help(one) for one in found)
+        return _all_help(found)
     answered = _by_value(word) or _by_concept(word)
     if answered:
         names = listed((one.dotted for one in answered), "and")
-        return f"{quoted(word)} is no key; this is what answers to it: {names}.\n\n" + "\n\n".join(
-            _help(one) for one in answered
-        )
+        return f"{quoted(word)} is no key; this is what answers to it: {names}.\n\n{_all_help(answered)}"
     known = [one.name for one in outline().values()] + [one.dotted for one in outline().values()]
     close = nearest(word, known)
     hint = f"Did you mean {quoted(close)}? " if close is not None else ""
@@ -79,9 +78,7 @@ def explain(key: str | None) -> str:
 
 def schema() -> dict[str, Any]:
     """The JSON Schema (draft 2020-12) of a description."""
-    generated = _tidied(StudyDescription.model_json_schema(by_alias=True), ())
-    assert isinstance(generated, dict)
-    return {"$schema": DIALECT, **generated}
+    return {"$schema": DIALECT, **without_python(StudyDescription.model_json_schema(by_alias=True))}
 
 
 def _overview() -> str:
@@ -118,8 +115,17 @@ def _first_sentence(text: str) -> str:
     return re.split(r"(?<=[.;]) ", text)[0].rstrip(";.") + "."
 
 
-def _help(one: Key) -> str:
-    lines = [one.dotted + (" (required)" if one.required else ""), ""]
+def _all_help(keys: list[Key]) -> str:
+    # A key that stands in several places with one meaning (a role's `reason:`) is explained once.
+    same = dict[tuple[str, str], list[Key]]()
+    for one in keys:
+        same.setdefault((one.means, one.example), []).append(one)
+    return "\n\n".join(_help(group) for group in same.values())
+
+
+def _help(places: list[Key]) -> str:
+    one = places[0]
+    lines = [", ".join(place.dotted for place in places) + (" (required)" if one.required else ""), ""]
     lines.append(fill(one.means, WIDTH, initial_indent="  ", subsequent_indent="  "))
     lines += ["", *_pair("takes", one.kind)]
     if one.has_keys:
@@ -184,26 +190,3 @@ def _names_in_examples() -> frozenset[str]:
     for one in outline().values():
         names |= set(yaml.safe_load(one.example).get("variables", {}))
     return frozenset(names)
-
-
-def _tidied(node: Any, path: Pattern) -> Any:
-    """The schema with values as examples, and without nulls, which a description cannot hold."""
-    if isinstance(node, list):
-        return [_tidied(item, path) for item in node]
-    if not isinstance(node, dict):
-        return node
-    node = dict(node)
-    example = node.pop("example", None)
-    otherwise = node.pop("otherwise", None)
-    if node.get("default", ...) is None:
-        del node["default"]
-    parts = node.get("anyOf")
-    if isinstance(parts, list) and {"type": "null"} in parts:
-        rest = [part for part in parts if part != {"type": "null"}]
-        del node["anyOf"]
-        node = {**node, **(rest[0] if len(rest) == 1 else {"anyOf": rest})}
-    if isinstance(otherwise, str) and otherwise:
-        node["description"] = f"{node['description']} If absent: {otherwise}"
-    if isinstance(example, str):
-        node["$comment"] = example
-    return {key: _tidied(value, path) for key, value in node.items()}

@@ -39,8 +39,22 @@ WORDS: dict[tuple[Pattern, str], str] = {
         "Write `missing_data: complete cases`. The report counts the rows that are lost and tests whether "
         "being incomplete goes with the outcome."
     ),
+}
+
+# (path of the key, word) -> how what the word means is written.
+SPELLINGS: dict[tuple[Pattern, str], str] = {
     (("variables", NAME, "shape"), "spline"): "Write `shape: {spline: {knots: 4}}`.",
     (("variables", NAME, "shape"), "log"): "Write `shape: log2`; the odds ratio is then per doubling.",
+    (("variables", NAME, "kind"), "number"): "Write `kind: quantity`.",
+    (("variables", NAME, "kind"), "numeric"): "Write `kind: quantity`.",
+    (("variables", NAME, "kind"), "continuous"): "Write `kind: quantity`.",
+    (("variables", NAME, "kind"), "ordinal"): "Write `kind: ordered`, with `levels:` from lowest to highest.",
+    (("variables", NAME, "kind"), "categorical"): "Write `kind: category`.",
+    (("variables", NAME, "kind"), "nominal"): "Write `kind: category`.",
+    (
+        ("variables", NAME, "kind"),
+        "boolean",
+    ): "Write `kind: binary`, with the value that means yes as `present:`.",
 }
 
 # (path of the section, key) -> what can be done instead.

@@ -7,6 +7,7 @@ postpone every other message to the next attempt.
 from __future__ import annotations
 
 from dataclasses import dataclass, field
+from functools import cache
 from typing import Annotated, Any, Generic, TypeVar, cast
 
 from pydantic import TypeAdapter, ValidationError
@@ -87,13 +88,18 @@ def _part(model: type[S], value: Any) -> Part[S] | None:
         written = info.alias or name
         if written not in value:
             continue
-        annotation: Any = Annotated[info.annotation, *info.metadata] if info.metadata else info.annotation
         try:
-            adapter: TypeAdapter[Any] = TypeAdapter(annotation)
-            right[name] = adapter.validate_python(value[written])
+            right[name] = _adapter(model, name).validate_python(value[written])
         except ValidationError:
             wrong.add(name)
     return Part(cast(S, model.model_construct(**right)), frozenset(wrong))
+
+
+@cache
+def _adapter(model: type[Section], name: str) -> TypeAdapter[Any]:
+    info = model.model_fields[name]
+    annotation: Any = Annotated[info.annotation, *info.metadata] if info.metadata else info.annotation
+    return TypeAdapter(annotation)
 
 
 def _roles(role: str, items: list[Any]) -> list[RoleAt]:

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterable
 from dataclasses import dataclass
+from itertools import islice
 from pathlib import Path
 from typing import TYPE_CHECKING
 
@@ -16,6 +17,7 @@ if TYPE_CHECKING:
     from fourfold.description.model import StudyDescription
 
 MOST_PROBLEMS = 100
+MOST_COLLECTED = MOST_PROBLEMS + 20
 
 
 @dataclass(frozen=True, slots=True)
@@ -93,9 +95,9 @@ def parse(text: str, path: Path, *, allow_outside: bool = False) -> tuple[StudyD
     try:
         description = StudyDescription.model_validate(data, by_alias=True, by_name=False)
     except ValidationError as error:
-        problems += problems_of(error, positions)
+        problems += islice(problems_of(error, positions), MOST_COLLECTED)
     parts = legible(data)
-    problems += disagreements(parts, positions)
+    problems += islice(disagreements(parts, positions), MOST_COLLECTED)
     if parts.data is not None and "file" in parts.data.section.model_fields_set:
         where = positions.find("data", "file")
         missing = data_file_problem(path, parts.data.section.file, where, allow_outside=allow_outside)
@@ -109,8 +111,11 @@ def _in_order(problems: Iterable[Problem], file: str) -> list[Problem]:
     """By place in the file, without repeats; a flood is cut off and counted."""
     ordered = sorted(dict.fromkeys(problems), key=_place)
     if len(ordered) > MOST_PROBLEMS:
-        rest = len(ordered) - MOST_PROBLEMS
-        more = Problem(f"... and {rest:,} more problems.", "Mend these first.", Position(file))
+        more = Problem(
+            f"There are more than {MOST_PROBLEMS} problems; the first of them are listed.",
+            "Mend these, and run again.",
+            Position(file),
+        )
         ordered = [*ordered[:MOST_PROBLEMS], more]
     return ordered
 

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import re
+from collections.abc import Iterator
 from typing import Any
 
 from pydantic import ValidationError
@@ -18,14 +19,12 @@ from fourfold.errors import Problem
 _KIND_ERRORS = {"model_type", "model_attributes_type", "dict_type"}
 
 
-def problems_of(error: ValidationError, positions: Positions) -> list[Problem]:
+def problems_of(error: ValidationError, positions: Positions) -> Iterator[Problem]:
     """One problem for each thing that the models refuse."""
-    problems = []
     for detail in error.errors(include_url=False):
         path = tuple(detail["loc"])
         if not positions.refused(path):
-            problems.append(_problem(detail, path, positions))
-    return problems
+            yield _problem(detail, path, positions)
 
 
 def _problem(detail: ErrorDetails, path: Path, positions: Positions) -> Problem:
@@ -51,6 +50,8 @@ def _problem(detail: ErrorDetails, path: Path, positions: Positions) -> Problem:
         advice = "Write one item in each line, after a dash."
         if isinstance(value, str) and value:
             advice = f"Write `{name}: [{value}]`." if len(value) < 60 and "," not in value else advice
+        elif isinstance(value, str):
+            advice = f"Write its items as in `{name}: [one, two]`, or remove the line."
         return Problem(f"{subject} expects a list; found {found(value)}.", advice, where)
     key = outline().get(pattern_of(path))
     wanted = key.kind if key is not None else "another kind of value"
@@ -78,10 +79,11 @@ def unknown_key(path: Path, value: Any, positions: Positions) -> Problem:
         return Problem(f"`{word}` is not a key that this version acts on{place}.", instead, where)
     what = f"`{_short(word)}` is not a known key{place}."
     known = below(section)
-    close = nearest(word, known)
+    elsewhere = [key for key in outline().values() if key.name == word and key.path[:-1] != section]
+    close = nearest(word, known) if not elsewhere else None
     above = positions.node(*path[:-1])
     empty = isinstance(value, Written) and value.plain and not value
-    if empty and above is not None and above.flow and close is None:
+    if empty and above is not None and above.flow and close is None and ":" not in word:
         return Problem(
             what,
             "If the comma before it belongs to a text, put that text in quotation marks, as in "
@@ -92,7 +94,6 @@ def unknown_key(path: Path, value: Any, positions: Positions) -> Problem:
         return Problem(what, "Put a space after the colon, as in kind: binary.", where)
     if close is not None and close != word:
         return Problem(what, f"Did you mean `{close}`?", where)
-    elsewhere = [key for key in outline().values() if key.name == word and key.path[:-1] != section]
     if elsewhere:
         return Problem(what, f"It belongs {listed(dict.fromkeys(_under(key) for key in elsewhere))}.", where)
     return Problem(what, f"Known keys here: {', '.join(known)}.", where)
@@ -120,6 +121,10 @@ def _wrong_word(path: Path, value: Any, context: dict[str, Any], positions: Posi
         instead = later.instead(pattern, value)
         if instead is not None:
             return Problem(f"{subject}: {quoted(value)} is not done by this version.", instead, where)
+        spelling = later.SPELLINGS.get((pattern, value.lower()))
+        if spelling is not None:
+            what = f"{subject} is written another way; found {quoted(value)}."
+            return Problem(what, spelling, where)
     what = f"{subject} expects {listed(quoted(word) for word in words)}; found {found(value)}."
     if isinstance(value, Written) and value.plain and not value:
         return Problem(what, "Give it a value, or remove the line.", where)
@@ -149,6 +154,11 @@ def _no_mapping(path: Path, value: Any, positions: Positions) -> Problem:
         advice = "Put a space after the colon."
     elif isinstance(value, str) and not value:
         advice = "Write its keys below it, indented, or remove the line."
+    elif isinstance(value, str):
+        inner = below(pattern)
+        fitting = [name for name, child in inner.items() if value in child.words] or list(inner)
+        if path and (len(fitting) == 1) and len(value) < 60:
+            advice = f"Write `{path[-1]}: {{{fitting[0]}: {value}}}`."
     return Problem(f"{subject} expects {wanted}; found {found(value)}.", advice, positions.find(*path))
 
 

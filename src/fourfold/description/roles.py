@@ -83,7 +83,7 @@ class Condition(Section):
         default=None,
     )
     missing: Truth | None = key(
-        "true: true where the value is not recorded; false: where it is.",
+        "True where the value is not recorded; with false, where it is recorded.",
         example="exclusions:\n  - {reason: Age not recorded, where: {variable: age, missing: true}}",
         default=None,
     )

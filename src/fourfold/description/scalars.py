@@ -38,12 +38,15 @@ _NUMBER_ADVICE = (
 )
 
 
-def expected(phrase: str, value: Any, advice: str = "") -> PydanticCustomError:
+GIVE_A_VALUE = "Give it a value, or remove the line."
+
+
+def expected(phrase: str, value: Any, advice: str = "", shown: str | None = None) -> PydanticCustomError:
     """The error for a value of another kind than its key takes."""
     return PydanticCustomError(
         REFUSED,
         "expected {expected}, found {found}",
-        {"expected": phrase, "found": found(value), "advice": advice},
+        {"expected": phrase, "found": shown or found(value), "advice": advice},
     )
 
 
@@ -55,20 +58,21 @@ def refusal(what: str, advice: str = "") -> PydanticCustomError:
 def text(value: Any) -> str:
     """A text of one or more visible characters."""
     if isinstance(value, Written) and value.plain and value in NO_VALUE:
-        raise expected("text", "", "Give it a value, or remove the line.")
+        raise expected("text", "", GIVE_A_VALUE)
     if not isinstance(value, str):
         raise expected("text", value, "A text that begins with a bracket or brace needs quotation marks.")
     if not value.strip():
-        raise expected("text", "an empty text", "Give it a value, or remove the line.")
+        raise expected("text", value, GIVE_A_VALUE, shown="an empty text")
     return _checked(value)
 
 
 def level(value: Any) -> str:
     """A value of a column, as text, exactly as it is written."""
     if isinstance(value, str) and (not value.strip() or (isinstance(value, Written) and value.refused)):
-        raise expected(
-            "a value as it stands in the data", value, "What counts as not recorded belongs under `missing:`."
-        )
+        empty = isinstance(value, Written) and value.plain
+        advice = GIVE_A_VALUE if empty else "What counts as not recorded belongs under `missing:`."
+        shown = None if empty else "an empty text"
+        raise expected("a value as it stands in the data", value, advice, shown)
     return code(value)
 
 
@@ -168,11 +172,11 @@ def number_advice(written: str) -> str:
 
 def _unquoted(value: Any, kind: str) -> str:
     if isinstance(value, Written) and not value.plain and _NUMBER.fullmatch(value):
-        raise expected(kind, "a text in quotation marks", f"Write {value} without quotation marks.")
+        raise expected(kind, value, f"Write {value} without quotation marks.", "a text in quotation marks")
     if not isinstance(value, str):
         raise expected(kind, value)
     if isinstance(value, Written) and value in NO_VALUE:
-        raise expected(kind, "", "Give it a value, or remove the line.")
+        raise expected(kind, "", GIVE_A_VALUE)
     return str(value)
 
 

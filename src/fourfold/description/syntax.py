@@ -10,6 +10,7 @@ from fourfold.description.wording import visible
 from fourfold.errors import Position, Problem
 
 _TAB_FIRST = re.compile(r" *\t")
+_BEGAN_ABOVE = "quoted scalar|flow (mapping|sequence)|simple key"
 _LOOK_AROUND = (
     "Look at this line and the one above for a missing quotation mark, bracket or colon, or for "
     "indentation that does not agree."
@@ -95,7 +96,7 @@ def syntax_problem(error: yaml.MarkedYAMLError, text: str, file: str) -> Problem
     context, met = error.context or "", error.problem or ""
     mark = error.problem_mark or error.context_mark
     # An unclosed quotation mark or bracket is noticed far below; what helps is where it opened.
-    opened = error.context_mark if re.search("quoted scalar|flow (mapping|sequence)", context) else None
+    opened = error.context_mark if re.search(_BEGAN_ABOVE, context) else None
     if opened is not None and "escape" not in met:
         mark = opened
     if mark is None:
@@ -112,6 +113,13 @@ def syntax_problem(error: yaml.MarkedYAMLError, text: str, file: str) -> Problem
             f"Replace each tab by spaces.{more}",
             Position(file, at.line + 1, at.column + 1),
         )
+    above = _without_colon(lines, mark.line)
+    if above is not None and "mapping values" in met:
+        return Problem(
+            "This line has no colon, although the next one is a key below it.",
+            f"Write `{visible(lines[above].strip())}:`.",
+            Position(file, above + 1, len(lines[above]) - len(lines[above].lstrip()) + 1),
+        )
     for in_context, in_met, what, advice in _SAYINGS:
         if re.search(in_context, context) and re.search(in_met, met):
             at_index = error.context_mark if re.search("alias|anchor|block scalar", context) else mark
@@ -119,6 +127,15 @@ def syntax_problem(error: yaml.MarkedYAMLError, text: str, file: str) -> Problem
             fill = visible(character) or "?"
             return Problem(what.format(character=fill), advice.format(character=fill), where)
     return Problem("This line cannot be read as YAML.", _LOOK_AROUND, where)
+
+
+def _without_colon(lines: list[str], line: int) -> int | None:
+    """The line above, if it is a single word that can only be a key whose colon was forgotten."""
+    for number in range(min(line, len(lines)) - 1, -1, -1):
+        stripped = lines[number].split(" #")[0].strip()
+        if stripped and not stripped.startswith("#"):
+            return number if re.fullmatch(r"[\w-]+", stripped) else None
+    return None
 
 
 def _character(text: str, index: int) -> str:

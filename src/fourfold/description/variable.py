@@ -137,11 +137,11 @@ class Variable(Section):
         otherwise="Only those under `data:`.",
     )
     levels: list[Level] = key(
-        "The values of a category or ordered variable, exactly as they stand in the data; for an ordered "
-        "one from lowest to highest. A value in the data that is not listed is an error.",
+        "The values of a category, ordered or binary variable, exactly as they stand in the data; for an "
+        "ordered one from lowest to highest. A value in the data that is not listed is an error.",
         example="variables:\n  ward: {label: Ward, kind: category, levels: [North, South, East]}",
         factory=list,
-        otherwise="A category takes the values found in the data; for an ordered variable it is required.",
+        otherwise="The values found in the data; those of an ordered variable must then be numbers.",
     )
     reference: Reference | None = key(
         "The level that the others are compared with; of a quantity with a curve, the value that the curve "
@@ -186,7 +186,7 @@ class Variable(Section):
         example="variables:\n  bmi: {label: Body-mass index, kind: quantity, shape: {spline: {knots: 4}}, "
         "compare: [[25, 30], [25, 35]]}",
         factory=list,
-        otherwise="The report compares quartiles.",
+        otherwise="The upper quartile is compared with the lower.",
     )
     expected: Literal["raises", "lowers"] | None = key(
         "Whether earlier knowledge says that the variable raises or lowers the odds; if every estimate is "
@@ -226,9 +226,11 @@ class Variable(Section):
     @field_validator("levels", mode="after")
     @classmethod
     def _different(cls, levels: list[str]) -> list[str]:
-        for place, value in enumerate(levels):
-            if value in levels[:place]:
+        seen = set[str]()
+        for value in levels:
+            if value in seen:
                 raise refusal(f"lists {quoted(value)} twice.", "List each level once.")
+            seen.add(value)
         if len(levels) == 1:
             raise refusal(
                 f"lists one level only ({quoted(levels[0])}); a variable needs two or more to compare.",

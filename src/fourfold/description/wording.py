@@ -4,9 +4,12 @@ from __future__ import annotations
 
 import difflib
 from collections.abc import Iterable
+from itertools import islice
 from typing import Any
 
 LONGEST_QUOTE = 60
+# Comparing words is slow; a description with more names than this still gets its errors at once.
+MOST_COMPARED = 500
 NO_VALUE = ("", "~", "null", "Null", "NULL")
 
 
@@ -48,11 +51,11 @@ def listed(words: Iterable[str], last: str = "or") -> str:
     return f"{', '.join(words[:-1])} {last} {words[-1]}"
 
 
-def nearest(word: str, known: Iterable[str]) -> str | None:
+def nearest(word: str, known: Iterable[str], alike: float = 0.6) -> str | None:
     """The known word that ``word`` most likely stands for; None if none is near."""
-    by_lower = {candidate.lower(): candidate for candidate in known}
-    close = difflib.get_close_matches(word.lower()[:200], list(by_lower), 1, 0.6)
-    return by_lower[close[0]] if close else None
+    by_lower = {candidate.lower(): candidate for candidate in islice(known, MOST_COMPARED)}
+    close = difflib.get_close_matches(word.lower()[:200], [name[:200] for name in by_lower], 1, alike)
+    return by_lower.get(close[0]) if close else None
 
 
 def did_you_mean(word: str, known: Iterable[str]) -> str:
