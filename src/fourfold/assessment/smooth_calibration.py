@@ -23,6 +23,7 @@ FEWEST_RISKS = 5
 MOST_RISKS = 1_500
 # At either end this many distinct risks stay as they are: the curve bends most on them.
 OUTERMOST = 50
+COMPUTED = 300
 METHOD = "local quadratic regression of the outcome on fitted risk, span 0.75"
 METHOD_GATHERED = METHOD + ", fitted risks but the outermost first gathered into 1,500 groups of equal size"
 METHOD_NONE = "no smooth curve: fewer than five distinct fitted risks"
@@ -79,7 +80,9 @@ def smooth_curve(
     everyone, method = found, METHOD
     if found.values.size > MOST_RISKS:
         found, method = _gathered(found), METHOD_GATHERED
-    smoothed = np.clip(local_regression(found, found.values, SPAN, DEGREE).fitted, 0.0, 1.0)
+    at = found.values if found is everyone else found.values[_places(found.values.size)]
+    fitted = local_regression(found, at, SPAN, DEGREE).fitted
+    smoothed = np.clip(np.interp(found.values, at, fitted), 0.0, 1.0)
     ici, e50, e90, emax = _distances(everyone, found, smoothed)
     curve: list[tree.CurvePoint] = []
     if high > low:
@@ -111,6 +114,13 @@ def _gathered(found: Tally) -> Tally:
         joined(found.people, middle.people),
         joined(found.events, middle.events),
     )
+
+
+def _places(values: int) -> Integers:
+    """Where a gathered curve is computed; in between it is read off a straight line."""
+    outer = np.arange(OUTERMOST)
+    even = np.linspace(0, values - 1, COMPUTED).astype(np.int64)
+    return np.unique(np.concatenate([outer, even, values - 1 - outer]))
 
 
 def _distances(everyone: Tally, found: Tally, smoothed: Array) -> tuple[float, float, float, float]:

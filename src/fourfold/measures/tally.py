@@ -52,7 +52,8 @@ class Tally:
         """
         # A cut between two distinct values separates them like the lower of the two does, so the
         # lower order statistic is the cut: whole numbers only, no rounding to decide a group.
-        places = [(self.total - 1) * j // groups for j in range(1, groups)]
+        last = self.total - 1
+        places = [last * j // groups for j in range(1, groups)]
         ends = np.searchsorted(np.cumsum(self.people), np.array(places, dtype=np.int64), side="right")
         starts = np.unique(np.concatenate([[0], ends + 1]))
         return starts[starts < self.values.size].astype(np.int64)
