@@ -10,13 +10,13 @@ from pathlib import Path
 
 import numpy as np
 
-SEED = 20230117
+SEED = 20230121
 ROWS = 1460
 
 
 def main() -> None:
     draw = np.random.default_rng(SEED)
-    age = np.clip(draw.normal(63, 14, ROWS), 16, 96).round().astype(int)
+    age = np.clip(draw.normal(62, 16, ROWS), 15, 96).round().astype(int)
     bmi = np.clip(draw.gamma(22, 1.24, ROWS), 16.5, 52).round(1)
     smoker = draw.random(ROWS) < 0.34 - 0.002 * (age - 63)
     diabetes = draw.random(ROWS) < 0.08 + 0.006 * np.clip(bmi - 24, 0, None)

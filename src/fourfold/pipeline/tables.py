@@ -25,15 +25,16 @@ def fourfold_tables(
         if variable.kind != "binary" or variable.role not in ("exposure", "predictor"):
             continue
         exposed = rows.columns[variable.name].values == 1
-        cells = [
-            rows.count(mask)
-            for mask in (exposed & event, exposed & ~event, ~exposed & event, ~exposed & ~event)
-        ]
+        a, b = rows.count(exposed & event), rows.count(exposed & ~event)
+        c, d = rows.count(~exposed & event), rows.count(~exposed & ~event)
         found.append(
             fourfold_table(
-                *cells,
-                design=design,
-                confidence=analysis.confidence,
+                a,
+                b,
+                c,
+                d,
+                design,
+                analysis.confidence,
                 exposure=variable.name,
                 label=variable.label,
                 exposed_label=variable.present or "present",

@@ -23,8 +23,32 @@ def finding_texts(results: tree.Results) -> list[tuple[tree.Finding, FindingWord
     return list(zip(ordered, words, strict=True))
 
 
+def flow_lines(results: tree.Results) -> list[str]:
+    """The flow of participants, a line for each step."""
+    writer = Writer.of(results)
+    people = results.participants
+
+    def line(key: str, n: int | None, hidden: tree.Hidden, name: str, **values: str) -> str:
+        return writer.say(f"labels.command.{key}", n=writer.numbers.count(n, hidden.get(name)), **values)
+
+    lines = [line("read", people.read, people.hidden, "read")]
+    lines += [
+        line("excluded", step.count, step.hidden, "count", reason=step.reason) for step in people.exclusions
+    ]
+    lines.append(line("eligible", people.eligible, people.hidden, "eligible"))
+    lines += [
+        line("missing", item.count, item.hidden, "count", label=item.label)
+        for item in people.missing
+        if item.count != 0
+    ]
+    lines.append(line("incomplete", people.incomplete, people.hidden, "incomplete"))
+    events = writer.numbers.count(people.events, people.hidden.get("events"))
+    lines.append(line("analysed", people.analysed, people.hidden, "analysed", events=events))
+    return lines
+
+
 def standing_caution(language: str = "en") -> str:
-    """The caution that ends every command and stands at the foot of every page."""
+    """The cautions that end every command, in full."""
     from fourfold.report.assets import language_file
 
-    return " ".join(str(language_file(language, "labels")["page"]["caution_short"]).split())
+    return " ".join(str(language_file(language, "labels")["command"]["caution"]).split())
