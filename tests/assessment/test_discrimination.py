@@ -79,7 +79,7 @@ def test_area_of_each_completed_copy():
 
 
 def test_interval_on_the_logit():
-    # Computed in base R (method notes, 3.1): A .80, se .035 gives .722631 to .859969. Scores with
+    # Computed in base R 4.2.2: A .80, se .035 gives .722631 to .859969. Scores with
     # exactly that area; the error is put in its place.
     class Fixed:
         estimate, standard_error, events, non_events = 0.8, 0.035, 50, 100
@@ -153,7 +153,7 @@ def test_area_is_mann_whitney_and_turns_over(score: np.ndarray, data: st.DataObj
 
 
 def test_all_pairs_ordered_has_a_one_sided_bound():
-    # The bound alpha^(1/min(n1, n0)) of the method notes, 3.1.
+    # By hand: ten disjoint pairs are all ordered with probability A^10 at most; .05 = A^10 at the bound.
     score, event = np.arange(30.0), np.arange(30) >= 20
     found = discrimination(score, event)
     assert found.auc == 1.0

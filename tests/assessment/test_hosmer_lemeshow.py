@@ -83,7 +83,7 @@ def test_equal_patterns_stay_together_whatever_their_last_bits(birthwt: Any):
 
 
 def test_number_of_groups_by_size():
-    # Paul, Pennell & Lemeshow 2013: n 4,000 with 400 events gives 130 (computed, method notes 3.2).
+    # Paul, Pennell & Lemeshow 2013: n 4,000 with 400 events gives 130 (formula worked in base R).
     assert groups_by_size(4_000, 400) == 130
     assert groups_by_size(1_000, 300) == 10
     assert groups_by_size(4_000, 30) == 15

@@ -52,7 +52,7 @@ def test_figures_of_the_fitted_models(fitted: Any):
 
 
 def test_row_that_moves_smoking_most(birthwt: Any):
-    # Computed in base R (method notes, 3.7): -0.10072058 at row 57, counted from 1.
+    # Computed in base R 4.2.2: -0.10072058 at row 57, counted from 1.
     rows = row_diagnostics(birthwt.X, birthwt.event, birthwt.log_odds, birthwt.covariance, [5])
     place = np.abs(rows.change[:, 0]).argmax()
     assert place + 1 == 57
@@ -102,8 +102,8 @@ def crossing() -> tuple[np.ndarray, np.ndarray]:
 
 
 def test_crossing_one_is_noticed():
-    # By Woolf's interval of the saturated table: 10/10 v 9/31 excludes 1 (1.10 to 10.8), 9/10 v
-    # 9/31 does not (0.97 to 9.90).
+    # By Woolf's interval of the saturated table: 10/10 v 9/31 excludes 1 (1.09 to 10.9), 9/10 v
+    # 9/31 does not (0.97 to 9.96).
     X, event = crossing()
     fit = glm(X, event)
     found = influence(X, event, fit.params, fit.cov_params(), [Watched("x", "x", 1)])

@@ -25,7 +25,7 @@ def test_published_example():
     assert found["c2"] == pytest.approx(661.1, abs=5e-2)
     assert found["c3"] == pytest.approx(220.85, abs=5e-3)
     assert np.ceil(max(found["c1"], found["c2"], found["c3"])) == case["printed"]["participants"]
-    # van Smeden et al. 2019, mean absolute error .05: 801 (computed, method notes 5).
+    # van Smeden et al. 2019, mean absolute error .05: 801 (formula worked in base R).
     assert np.ceil(found["c4"]) == 801
 
 
@@ -77,7 +77,7 @@ def test_weak_model_falls_back_on_an_assumption():
 
 
 def test_largest_r_squared_of_the_worked_example(birthwt: Any):
-    # Computed (method notes 6): n 189, d 59, largest .711093; Nagelkerke's divisor.
+    # Computed in base R: n 189, d 59, largest .711093; Nagelkerke's divisor.
     assert largest_r_squared(59 / 189) == pytest.approx(0.711093, abs=5e-7)
     r = birthwt.expected["r_squared"]
     assert largest_r_squared(59 / 189) == pytest.approx(r["cox_snell"] / r["nagelkerke"], rel=1e-12)

@@ -31,7 +31,7 @@ def test_wilson_published_examples():
 
 
 def test_wilson_of_eight_in_ten():
-    # Computed in base R and SciPy (method notes of the project): .490162 to .943318.
+    # Computed in base R and SciPy: .490162 to .943318.
     found = wilson(8, 10)
     assert (found.lower, found.upper) == pytest.approx((0.490162, 0.943318), abs=5e-7)
 

@@ -29,10 +29,7 @@ def test_equal_groups_follow_their_definition(values: np.ndarray, groups: int):
     x = values * 8.0
     found = tally(x, np.zeros(x.size, dtype=bool))
     starts = [*found.equal_groups(groups), found.values.size]
-    mine = [
-        list(np.repeat(found.values[a:b], found.people[a:b]))
-        for a, b in itertools.pairwise(starts)
-    ]
+    mine = [list(np.repeat(found.values[a:b], found.people[a:b])) for a, b in itertools.pairwise(starts)]
     assert mine == cut_groups(x, groups)
 
 
