@@ -365,22 +365,23 @@ def bins() -> list[tree.RiskBin]:
 
 
 def model(prediction: bool) -> tree.Model:
-    names = ["(intercept)", *(LABELS[PARAMETERS[name][0]] for name in CASE["parameters"][1:])]
     terms = ["(intercept)", *(PARAMETERS[name][0] for name in CASE["parameters"][1:])]
+    levels = [None, *(PARAMETERS[name][1] for name in CASE["parameters"][1:])]
+    names = [term if level is None else f"{term}: {level}" for term, level in zip(terms, levels, strict=True)]
     squared = CASE["r_squared"]
     return tree.Model(
         parameters=names,
         terms=terms,
         coding=[
-            "always 1",
-            "per year",
-            "per pound",
-            "1 if black, else 0",
-            "1 if other, else 0",
-            "1 if yes, else 0",
-            "per labour",
-            "1 if yes, else 0",
-            "1 if yes, else 0",
+            "1 in every row",
+            "value in years",
+            "value in pounds",
+            "1 for black, 0 otherwise; reference white",
+            "1 for other, 0 otherwise; reference white",
+            "1 for yes, 0 for no",
+            "value",
+            "1 for yes, 0 for no",
+            "1 for yes, 0 for no",
         ],
         coefficients=list(CASE["coefficients"]),
         covariance=[list(row) for row in CASE["covariance"]],
@@ -582,7 +583,7 @@ def cohort(prediction: bool = False) -> tree.Results:
             largest_cook=influence["max_cook_distance"],
             terms=[
                 tree.InfluenceTerm(
-                    parameter="Mother smoked",
+                    parameter="smoke",
                     term="smoke",
                     largest_change=influence["max_abs_dfbeta_over_se"][at],
                     largest_change_refitted=0.26,
@@ -704,7 +705,7 @@ def separated() -> tree.Results:
             crude=[without(one) for one in results.estimates.crude],
             adjusted=[without(one) for one in results.estimates.adjusted],
         ),
-        model=replace(results.model, separated=["Mother smoked"], separation="quasi-complete"),
+        model=replace(results.model, separated=["smoke"], separation="quasi-complete"),
     )
 
 

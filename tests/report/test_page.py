@@ -187,7 +187,8 @@ def test_prediction_leads_with_performance_and_gives_the_whole_equation():
     table = found.tables["table-equation"]
     # birthwt.json: intercept 0.464403283, age -0.027069779, both with standard errors.
     assert table[1] == ["Intercept", "always 1", "0.46440", "1.20470"]
-    assert table[2] == ["Mother’s age", "per year", "−0.027070", "0.036453"]
+    assert table[2] == ["Mother’s age", "value in years", "−0.027070", "0.036453"]
+    assert [row[0] for row in table[4:6]] == ["Group: black", "Group: other"]
     assert len(table) == 10
     assert "1 / (1 + exp(−L))" in text
     assert "table-covariates" not in found.tables

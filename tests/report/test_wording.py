@@ -65,10 +65,7 @@ def test_answer_of_a_case_control_study_speaks_of_cases_and_no_risk():
 def test_an_interval_that_holds_one_is_not_called_no_association():
     # Common practice after the ASA statement of 2016: compatible with no association, and with more.
     text = answered(with_smoke(sample.cohort(), odds_ratio=1.4, lower=0.7, upper=2.8, p_value=0.34))
-    assert (
-        "The interval holds 1: the data are compatible with no association and with odds ratios from "
-        "0.70 to 2.80." in text
-    )
+    assert "which is compatible with no association and with odds ratios from 0.70 to 2.80." in text
     assert "significant" not in text
     assert "compatible with no association" not in answered(sample.cohort())
 
@@ -77,6 +74,12 @@ def test_an_odds_ratio_of_one_is_not_worded_as_times():
     text = answered(with_smoke(sample.cohort(), odds_ratio=1.02, lower=0.7, upper=1.5, p_value=0.9))
     assert "the odds of low birth weight were about the same (adjusted odds ratio 1.02" in text
     assert "times as high" not in text
+
+
+@pytest.mark.parametrize(("value", "times"), [(0.42, "0.42"), (2.5177, "2.5"), (13.02, "13"), (2.0, "2.0")])
+def test_times_are_written_as_one_says_them(value, times):
+    text = answered(with_smoke(sample.cohort(), odds_ratio=value, lower=value / 1.2, upper=value * 1.2))
+    assert f"the odds of low birth weight were {times} times as high" in text
 
 
 @pytest.mark.parametrize(

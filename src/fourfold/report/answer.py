@@ -41,14 +41,6 @@ def _association(writer: Writer) -> list[str]:
     absolute = _absolute(writer, exposures[0]) if len(exposures) == 1 else None
     if absolute:
         sentences.append(absolute)
-    uncertain = [
-        estimate
-        for exposure in exposures
-        for estimate in writer.estimates(exposure.name)
-        if holds_one(estimate)
-    ]
-    if uncertain:
-        sentences.append(_compatible(writer, uncertain))
     sentences.append(_basis(writer, len(exposures)))
     return sentences
 
@@ -85,11 +77,14 @@ def _estimate(writer: Writer, estimate: tree.Estimate) -> str:
         ratio=ratio(writer, estimate),
         interval=interval(writer, estimate),
         p=p_phrase(writer, estimate.p_value),
+        compatible=_compatible(writer, estimate),
     )
 
 
 def _times(writer: Writer, value: float) -> str:
-    return writer.numbers.number(value, 1) if 1 <= value < 10 else writer.numbers.odds_ratio(value)
+    if value < 1:
+        return writer.numbers.odds_ratio(value)
+    return writer.numbers.number(value, 1 if value < 10 else 0)
 
 
 def _levels(writer: Writer, exposure: tree.Variable, estimates: list[tree.Estimate]) -> str:
@@ -146,15 +141,15 @@ def _of(writer: Writer, share: str, total: int) -> str:
     )
 
 
-def _compatible(writer: Writer, uncertain: list[tree.Estimate]) -> str:
-    one = uncertain[0] if len(uncertain) == 1 else None
-    bounded = one is not None and one.lower is not None and one.upper is not None
+def _compatible(writer: Writer, estimate: tree.Estimate) -> str:
+    """What an interval that holds 1 is compatible with; empty for any other."""
+    if not holds_one(estimate):
+        return ""
+    limit, like = writer.numbers.limit, estimate.odds_ratio
     return writer.say(
-        "answer.exposure.compatible.both",
-        several=len(uncertain) > 1,
-        comparisons=[comparison(writer, estimate) for estimate in uncertain],
-        lower=writer.numbers.odds_ratio(one.lower) if one is not None and bounded else None,
-        upper=writer.numbers.odds_ratio(one.upper) if one is not None and bounded else None,
+        "answer.exposure.compatible",
+        lower=None if estimate.lower is None else limit(estimate.lower, like),
+        upper=None if estimate.upper is None else limit(estimate.upper, like),
     )
 
 

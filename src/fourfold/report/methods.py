@@ -39,7 +39,8 @@ def methods(writer: Writer) -> list[Paragraph]:
 
 def _design(writer: Writer) -> list[str]:
     study, analysis, say = writer.results.study, writer.results.analysis, writer.say
-    exposures = [writer.inline(found.name) for found in writer.of_role("exposure")]
+    # Labels stand in quotation marks here: they may be of any grammar.
+    exposures = [f"“{found.label}”" for found in writer.of_role("exposure")]
     sentences = [
         say(
             "methods.design.opening",
@@ -51,7 +52,7 @@ def _design(writer: Writer) -> list[str]:
         say(
             f"methods.design.purpose.{study.purpose}",
             exposures=exposures,
-            outcome=writer.inline(writer.outcome.name),
+            outcome=writer.outcome.label,
         ),
     ]
     reasons = [exclusion.reason for exclusion in writer.results.participants.exclusions]
@@ -77,9 +78,7 @@ def _design(writer: Writer) -> list[str]:
 
 def _variables(writer: Writer) -> list[str]:
     outcome, analysis, say = writer.outcome, writer.results.analysis, writer.say
-    sentences = [
-        say("methods.variables.outcome", outcome=writer.inline(outcome.name), present=outcome.present)
-    ]
+    sentences = [say("methods.variables.outcome", outcome=outcome.label, present=outcome.present)]
     modelled = writer.modelled()
     sentences += [_variable(writer, variable) for variable in modelled]
     for variable in modelled:
@@ -201,7 +200,7 @@ def _assessment(writer: Writer) -> list[str]:
     if results.model.r_squared is not None:
         sentences.append(say("methods.assessment.r_squared"))
     if results.sample_size is not None:
-        sentences.append(say("methods.assessment.sample_size"))
+        sentences.append(say("methods.assessment.sample_size", criteria=bool(results.sample_size.criteria)))
     if results.influence is not None:
         sentences.append(say("methods.assessment.influence"))
     if results.collinearity is not None:

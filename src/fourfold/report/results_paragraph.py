@@ -39,6 +39,8 @@ def _flow(writer: Writer) -> list[str]:
             return None
         return numbers.percent(100 * part / whole, whole) or None
 
+    # Where a column of counts says so, the numbers are of people, not of rows of the file.
+    people = writer.results.analysis.counts_variable is not None
     if flow.exclusions:
         excluded = [exclusion.count for exclusion in flow.exclusions]
         known = [value for value in excluded if value is not None]
@@ -54,11 +56,12 @@ def _flow(writer: Writer) -> list[str]:
         first = say(
             "results.flow.read",
             read=count("read"),
+            people=people,
             reasons=reasons,
             excluded=numbers.count(total, None if total is not None else "derived"),
         )
     else:
-        first = say("results.flow.read_none_excluded", read=count("read"))
+        first = say("results.flow.read_none_excluded", read=count("read"), people=people)
     second = say(
         "results.flow.complete" if flow.incomplete == 0 else "results.flow.incomplete",
         eligible=count("eligible"),

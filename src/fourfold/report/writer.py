@@ -101,9 +101,11 @@ class Writer:
             return self.say("labels.event.case")
         return self.inline(self.outcome.name)
 
-    def exposure_labels(self) -> list[str]:
-        """Labels of the exposures as they stand in a sentence."""
-        return [self.inline(variable.name) for variable in self.of_role("exposure")]
+    def parameter(self, name: str, term: str) -> str:
+        """A parameter by its variable's label: ``asa: 3`` is printed ``ASA class: 3``."""
+        if term not in self.variables or not name.startswith(term):
+            return name
+        return self.variables[term].label + name.removeprefix(term)
 
     def of_role(self, *roles: str) -> list[tree.Variable]:
         return [variable for variable in self.results.variables if variable.role in roles]

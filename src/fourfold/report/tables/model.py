@@ -17,7 +17,11 @@ def equation(writer: Writer) -> Table:
     rows = []
     for place, parameter in enumerate(model.parameters):
         coefficient = model.coefficients[place]
-        name = parameter if parameter != INTERCEPT else writer.say("labels.rows.intercept")
+        name = (
+            writer.say("labels.rows.intercept")
+            if parameter == INTERCEPT
+            else writer.parameter(parameter, model.terms[place])
+        )
         coding = model.coding[place] if parameter != INTERCEPT else writer.say("labels.rows.intercept_coding")
         rows.append(
             Row(

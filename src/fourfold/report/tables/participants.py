@@ -46,7 +46,7 @@ def characteristics(writer: Writer, found: tree.DescriptiveTable, id: str) -> Ta
     return Table(
         id=id,
         caption=writer.say(
-            "labels.captions.characteristics", by=writer.inline(found.by), design=writer.results.study.design
+            "labels.captions.characteristics", by=found.by_label, outcome=found.by == writer.outcome.name
         ),
         headings=headings,
         rows=rows,

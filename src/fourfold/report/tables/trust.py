@@ -56,9 +56,9 @@ def performance(writer: Writer) -> Table | None:
         id="table-performance",
         caption=writer.say("labels.captions.performance"),
         headings=[
-            Heading(writer.say("labels.columns.measure"), 32, numeric=False),
-            Heading(writer.say("labels.columns.value"), 23),
-            Heading(writer.say("labels.columns.reading"), 45, numeric=False),
+            Heading(writer.say("labels.columns.measure"), 26, numeric=False),
+            Heading(writer.say("labels.columns.value"), 30),
+            Heading(writer.say("labels.columns.reading"), 44, numeric=False),
         ],
         rows=rows,
         notes=cells.hidden_note(writer, rows),
@@ -151,6 +151,8 @@ def _hosmer_lemeshow_notes(writer: Writer, calibration: tree.Calibration) -> lis
                 p=writer.numbers.p_phrase(found.p_value),
             )
         )
+    if len(calibration.groups) != found.groups:
+        notes.append(writer.say("labels.hosmer_lemeshow.gathered", groups=found.groups))
     if found.verdict is not None:
         notes.append(writer.say(f"labels.hosmer_lemeshow.verdict.{found.verdict.replace(' ', '_')}"))
     other = [row for row in found.by_groups if row.groups != found.groups and row.p_value is not None]
@@ -235,7 +237,7 @@ def influence(writer: Writer) -> Table | None:
 
 def _parameter(writer: Writer, term: tree.InfluenceTerm) -> str:
     several = len(writer.estimates(term.term)) > 1
-    return term.parameter if several else writer.label(term.term)
+    return writer.parameter(term.parameter, term.term) if several else writer.label(term.term)
 
 
 def collinearity(writer: Writer) -> Table | None:
