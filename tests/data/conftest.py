@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import json
 from collections.abc import Callable
 from pathlib import Path
 from typing import Any
@@ -46,8 +47,9 @@ def study(tmp_path: Path) -> Study:
             "data": {"file": file, **keys.get("data", {})},
         }
         path = tmp_path / "study.yaml"
-        # Strings are quoted, so that a level such as "yes" stays the word.
-        path.write_text(yaml.safe_dump(description, default_style=None, allow_unicode=True), encoding="utf-8")
+        # By way of JSON, so that the writer of YAML makes no aliases of parts that are the same object.
+        text = yaml.safe_dump(json.loads(json.dumps(description)), allow_unicode=True)
+        path.write_text(text, encoding="utf-8")
         return load(path, allow_outside=True)
 
     return make

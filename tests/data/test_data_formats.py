@@ -47,7 +47,7 @@ def frame() -> pd.DataFrame:
             "ward": random.choice(["01", "1", "Süd, Ost"], ROWS),
             "grade": random.choice([1.0, 2.0, 3.0], ROWS),
             "seen": pd.Timestamp("2024-01-01") + pd.to_timedelta(np.arange(ROWS), unit="D"),
-            "note": "left \"aside\"\nover two lines",
+            "note": 'left "aside"\nover two lines',
         }
     )
     frame.loc[3, "age"] = np.nan
@@ -66,7 +66,9 @@ def write_csv(frame: pd.DataFrame, path: Path) -> dict[str, Any]:
 
 
 def write_european(frame: pd.DataFrame, path: Path) -> dict[str, Any]:
-    as_text(frame).to_csv(path, index=False, sep=";", decimal=",", encoding="utf-8-sig", lineterminator="\r\n")
+    as_text(frame).to_csv(
+        path, index=False, sep=";", decimal=",", encoding="utf-8-sig", lineterminator="\r\n"
+    )
     return {"decimal": ","}
 
 
@@ -147,7 +149,9 @@ def assert_same(found: Prepared, expected: Prepared) -> None:
 
 
 @pytest.mark.parametrize("file", WRITERS)
-def test_every_format_gives_the_same_rows(study: Study, tmp_path: Path, frame: pd.DataFrame, file: str) -> None:
+def test_every_format_gives_the_same_rows(
+    study: Study, tmp_path: Path, frame: pd.DataFrame, file: str
+) -> None:
     options = WRITERS[file](frame, tmp_path / file)
     found = prepare(study(None, file=file, data={"identifier": "id", **options}, **KEYS))
     write_csv(frame, tmp_path / "expected.csv")

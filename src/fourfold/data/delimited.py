@@ -16,7 +16,6 @@ from numpy.typing import NDArray
 
 from fourfold.data.source import Content, Request
 
-DELIMITERS = {",": ",", ";": ";", "\t": "\t", "|": "|", "tab": "\t", "\\t": "\t"}
 NAMES = {",": "comma", ";": "semicolon", "\t": "tab", "|": "bar"}
 ENCODINGS = {
     "utf-8": "utf-8",
@@ -126,14 +125,8 @@ def _with_line_feeds(data: bytes) -> bytes:
 
 def _delimiter(request: Request, start: str) -> str:
     """The stated delimiter, or the one that cuts the first rows into equally many cells."""
-    stated = request.options.delimiter
-    if stated is not None:
-        if stated not in DELIMITERS:
-            raise request.error(
-                f"`delimiter: {stated}` is not known; expected one of , ; | or tab.",
-                "Correct it under `data:`.",
-            )
-        return DELIMITERS[stated]
+    if request.options.delimiter is not None:
+        return request.options.delimiter
     if request.path.suffix.lower() in (".tsv", ".tab"):
         return "\t"
     best, best_score = ",", (0.0, 0)

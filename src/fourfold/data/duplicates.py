@@ -23,8 +23,8 @@ def repeated_identifiers(identifiers: Any, kept: Mask) -> int:
 def identical_rows(columns: Iterable[Any], kept: Mask, *, identified: bool) -> int:
     """How many of the rows kept equal an earlier row in every column read.
 
-    Without an identifier, people may agree in everything by chance: identical rows are counted only
-    where, were the columns independent, fewer than one such pair would be expected.
+    Without an identifier, people may agree in everything by chance: identical rows are then counted only
+    where they are more than twice the pairs to be expected, were the columns independent, and one.
     """
     n = int(kept.sum())
     if n < 2:
@@ -34,10 +34,10 @@ def identical_rows(columns: Iterable[Any], kept: Mask, *, identified: bool) -> i
     for column in columns:
         encoded = text(column).filter(kept).dictionary_encode()
         codes = pc.fill_null(encoded.indices, len(encoded.dictionary)).to_numpy(zero_copy_only=False)
-        shares = np.bincount(codes) / n
-        agree *= float((shares**2).sum())
+        totals = np.bincount(codes).astype(float)
+        agree *= float((totals * (totals - 1)).sum()) / (n * (n - 1))
         # Renumbered after each column, so that the code of a combination never overflows.
         together = np.unique(together * (int(codes.max()) + 1) + codes, return_inverse=True)[1]
-    if not identified and agree * n * (n - 1) / 2 >= 1:
-        return 0
-    return n - int(together.max()) - 1
+    found = n - int(together.max()) - 1
+    expected = agree * n * (n - 1) / 2
+    return found if identified or found > 2 * expected + 1 else 0

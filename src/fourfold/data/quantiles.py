@@ -56,7 +56,8 @@ def spline_knots(
     if 2 * 5 <= people < SMALL:
         places[0], places[-1] = 4 / (people - 1), (people - 5) / (people - 1)
     knots = quantile(values, places, counts)
-    if np.any(np.diff(knots) <= 0):
+    # With fewer different values than knots the columns would depend on each other.
+    if np.any(np.diff(knots) <= 0) or np.unique(values).size < number:
         raise DataError(
             f"{name}: a spline with {number} knots needs more different values: its knots would stand at "
             f"{', '.join(f'{knot:g}' for knot in knots)}.",

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from datetime import date
 
+import numpy as np
 import pyarrow as pa
 
 from fourfold.data.raw import from_objects, normalise
@@ -11,6 +12,9 @@ from fourfold.data.source import Content, Request
 
 DAY_ZERO = date(1960, 1, 1)
 """Dates in transport files are numbers: days since the first of January 1960."""
+
+READ_FOR_ZERO = 16.0**-65
+"""The smallest number of the format, which pandas gives for the eight zero bytes that mean 0."""
 
 
 def read(request: Request) -> Content:
@@ -35,7 +39,8 @@ def read(request: Request) -> Content:
     for name in request.choose(available):
         series = frame[name]
         if series.dtype.kind == "f":
-            columns[name] = normalise(pa.array(series.to_numpy(), pa.float64(), from_pandas=True))
+            numbers = series.to_numpy()
+            columns[name] = normalise(pa.array(np.where(numbers == READ_FOR_ZERO, 0.0, numbers)))
         else:
             columns[name] = from_objects([None if pd.isna(value) else value for value in series])
     return Content(columns=columns, available=available, rows=len(frame), day_zero=DAY_ZERO)
