@@ -131,7 +131,9 @@ def climb(
         first = _start(observed, evaluate)
     else:
         first = start if centred is None else centred.inward(start)
-    return maximise(evaluate, first, observed.people, iterations=iterations)
+    # Eleven digits of the covariance where passes are cheap, nine where they are not.
+    settled = 1e-22 if observed.blocks.n < WARM_FROM else 1e-18
+    return maximise(evaluate, first, observed.people, iterations=iterations, settled=settled)
 
 
 def check_contrast(observed: Observed) -> None:

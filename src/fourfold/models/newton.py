@@ -91,12 +91,13 @@ def maximise(
     free: NDArray[np.intp] | None = None,
     iterations: int = ITERATIONS,
     enough: float | None = None,
+    settled: float = 1e-22,
 ) -> Optimum:
     """Climb to the maximum of a concave log-likelihood.
 
     Stops when the decrement U' I^-1 U is below 1e-12 max(1, |l|), which no change of units
-    moves. One step more is taken where the decrement says that the covariance would still move in
-    its ninth digit.
+    moves. One step more is taken where the decrement is above ``settled`` times the number of
+    people: the information is then still off by about the square root of ``settled``.
 
     Parameters
     ----------
@@ -123,7 +124,7 @@ def maximise(
         if enough is not None and decrement < enough:
             return Optimum(coefficients, sums, decrement, iteration, True)
         # The information moves by about sqrt(decrement / people) from here to the maximum.
-        if decrement < bound and (decrement < 1e-18 * people or extra_step_taken):
+        if decrement < bound and (decrement < settled * people or extra_step_taken):
             return Optimum(coefficients, sums, decrement, iteration, True)
         extra_step_taken = decrement < bound
         step = np.zeros_like(coefficients)
