@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import re
 from pathlib import Path
+from typing import Any
 
 import numpy as np
 import pandas as pd
@@ -64,7 +65,8 @@ def test_unanswered_drafts_are_refused(tmp_path: Path, reference: Path) -> None:
     with pytest.raises(DescriptionError) as caught:
         load(described)
     assert text.count(ANSWER) > 3
-    assert "study.design" in str(caught.value) or "design" in str(caught.value)
+    # Design, outcome and exposure at least are no answers yet.
+    assert len(caught.value.problems) >= 3
 
 
 def test_every_question_and_guess_is_marked(tmp_path: Path, reference: Path) -> None:
@@ -81,9 +83,9 @@ def column(values: list[str]) -> bytes:
     return "\n".join(["x,fever", *rows]).encode()
 
 
-def guessed(tmp_path: Path, values: list[str], name: str = "x") -> dict[str, object] | None:
+def guessed(tmp_path: Path, values: list[str], name: str = "x") -> Any:
     _, text = drafted(tmp_path, "rows.csv", column(values).replace(b"x", name.encode(), 1))
-    return yaml.safe_load(text)["variables"].get(name)  # type: ignore[no-any-return]
+    return yaml.safe_load(text)["variables"].get(name)
 
 
 N = 60

@@ -3,7 +3,9 @@
 from __future__ import annotations
 
 from collections import defaultdict
-from collections.abc import Sequence
+from collections.abc import Container, Mapping, Sequence
+from dataclasses import dataclass
+from hashlib import sha256
 
 import numpy as np
 from numpy.typing import NDArray
@@ -34,7 +36,8 @@ def audit(
     model will use them in the analysis set.
     """
     in_model = [variable for variable in variables if variable.role in MODEL_ROLES]
-    shares = {variable.name: largest_share(analysis, variable.name) for variable in in_model}
+    values = {variable.name: different_values(analysis.columns[variable.name]) for variable in in_model}
+    shares = {name: largest_share(analysis, different) for name, different in values.items()}
     identifier = description.data.identifier
     return tree.Audit(
         implausible=[found for variable in variables for found in _implausible(variable, eligible)],
@@ -46,7 +49,7 @@ def audit(
         ],
         constant=[name for name, share in shares.items() if share == 1],
         near_constant=[name for name, share in shares.items() if NEARLY_ALL < share < 1],
-        duplicated_columns=duplicated_columns(analysis, [variable.name for variable in in_model]),
+        duplicated_columns=duplicated_columns(values, {v.name for v in in_model if v.kind == "quantity"}),
         levels=[row for variable in in_model for row in _levels(variable, analysis, event)],
         unused_levels={
             variable.name: unused
@@ -88,38 +91,62 @@ def _implausible(variable: tree.Variable, rows: Rows) -> list[tree.ImplausibleVa
     ]
 
 
-def largest_share(rows: Rows, name: str) -> float:
-    """Share of people who have the most frequent value of a variable."""
-    values = rows.columns[name].values
-    _, place = np.unique(values, return_inverse=True)
-    totals = np.bincount(place, weights=rows.counts)
+@dataclass(frozen=True, slots=True)
+class Different:
+    """The different values of a column in increasing order: how many, and which one each row has."""
+
+    number: int
+    places: NDArray[np.intp]
+
+
+def different_values(column: Column) -> Different:
+    """Find the different values of a complete column."""
+    if column.kind in ("quantity", "date"):
+        values, places = np.unique(column.values, return_inverse=True)
+        return Different(values.size, places)
+    # Codes of levels need no sorting, only numbering without gaps.
+    codes = column.values.astype(np.intp)
+    used = np.bincount(codes) > 0
+    return Different(int(used.sum()), (np.cumsum(used) - 1)[codes])
+
+
+def largest_share(rows: Rows, different: Different) -> float:
+    """Share of people who have the most frequent value."""
+    totals = np.bincount(different.places, weights=rows.counts)
     # Ratios of whole numbers: a constant column gives exactly 1.
     return float(totals.max() / rows.people)
 
 
-def duplicated_columns(rows: Rows, names: Sequence[str]) -> list[list[str]]:
+def duplicated_columns(values: Mapping[str, Different], quantities: Container[str]) -> list[list[str]]:
     """Groups of variables that hold the same information: each value of one goes with one of the other.
 
     Quantities with many values must rank the rows alike, or exactly the other way round.
     """
     groups: defaultdict[bytes, list[str]] = defaultdict(list)
-    for name in names:
-        groups[_signature(rows.columns[name])].append(name)
+    for name, different in values.items():
+        # Constant columns are named for that alone.
+        if different.number > 1:
+            groups[_signature(different, ranked=name in quantities)].append(name)
     return [group for group in groups.values() if len(group) > 1]
 
 
-def _signature(column: Column) -> bytes:
-    different, first, place = np.unique(column.values, return_index=True, return_inverse=True)
-    if different.size == 1:
-        # Constant columns are named for that alone.
-        return column.name.encode()
-    if column.kind == "quantity" and different.size > FEW_VALUES:
-        turned = different.size - 1 - place
-        ranks = place if tuple(place[:1000]) < tuple(turned[:1000]) else turned
-        return b"ranks" + ranks.astype(np.int64).tobytes()
-    by_appearance = np.empty(different.size, dtype=np.int64)
-    by_appearance[np.argsort(first)] = np.arange(different.size)
-    return b"words" + by_appearance[place].tobytes()
+def _signature(different: Different, *, ranked: bool) -> bytes:
+    """What two columns share exactly if they hold the same information."""
+    places, number = different.places, different.number
+    if ranked and number > FEW_VALUES:
+        turned = number - 1 - places
+        # Of the two directions, the one that starts lower: the first place that is not its own mirror.
+        differing = np.flatnonzero(places != turned)
+        first = differing[0]
+        numbered = places if places[first] < turned[first] else turned
+        kind = b"ranks"
+    else:
+        first_row = np.empty(number, dtype=np.intp)
+        first_row[places[::-1]] = np.arange(places.size)[::-1]
+        by_appearance = np.empty(number, dtype=np.intp)
+        by_appearance[np.argsort(first_row)] = np.arange(number)
+        numbered, kind = by_appearance[places], b"words"
+    return kind + sha256(numbered.tobytes()).digest()
 
 
 def _levels(variable: tree.Variable, rows: Rows, event: Mask) -> list[tree.SparseLevel]:

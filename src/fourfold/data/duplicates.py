@@ -38,6 +38,8 @@ def identical_rows(columns: Iterable[Any], kept: Mask, *, identified: bool) -> i
         agree *= float((totals * (totals - 1)).sum()) / (n * (n - 1))
         # Renumbered after each column, so that the code of a combination never overflows.
         together = np.unique(together * (int(codes.max()) + 1) + codes, return_inverse=True)[1]
+        if int(together.max()) == n - 1:
+            return 0
     found = n - int(together.max()) - 1
     expected = agree * n * (n - 1) / 2
     return found if identified or found > 2 * expected + 1 else 0

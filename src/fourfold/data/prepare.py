@@ -252,8 +252,11 @@ def _identical_rows(description: StudyDescription, table: RawTable, kept: Mask) 
     # Where a row stands for many, equal rows are a way of writing, not a slip.
     if description.data.counts is not None:
         return 0
-    columns = [values for values in table.columns.values() if not pa.types.is_null(values.type)]
-    return identical_rows(columns, kept, identified=description.data.identifier is not None)
+    identifier = description.data.identifier
+    # The identifier first: where it tells all rows apart, nothing else need be looked at.
+    names = sorted(table.columns, key=lambda name: name != identifier)
+    columns = [table.columns[name] for name in names if not pa.types.is_null(table.columns[name].type)]
+    return identical_rows(columns, kept, identified=identifier is not None)
 
 
 def _error(table: RawTable, what: str, advice: str) -> DataError:
