@@ -593,6 +593,7 @@ class OutcomeByQuantity:
     bins: list[QuantityBin]
     points: list[JitteredPoint] = field(default_factory=list)
     group_label: str | None = None
+    hidden: Hidden = field(default_factory=dict)
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)

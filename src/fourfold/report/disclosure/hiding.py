@@ -1,0 +1,174 @@
+"""The one pass that hides small counts, and what gives them away, before anything is written.
+
+Counts are entered in a ledger with how they add up; the ledger decides which to hide; then the
+tree is rewritten. Everything computed from a hidden count goes with it. Running the pass on what
+it returned changes nothing, and a tree without small counts comes back as it was.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from dataclasses import fields, is_dataclass, replace
+from typing import Any
+
+from fourfold.report.disclosure import rewrite, secondary
+from fourfold.report.disclosure.ledger import DERIVED, Ledger, Path
+from fourfold.report.disclosure.limit import Limit
+from fourfold.report.disclosure.places import (
+    analysed,
+    audit,
+    characteristics,
+    findings,
+    fit,
+    fitted_risks,
+    flow,
+    groups,
+    joint,
+    roc,
+)
+from fourfold.report.disclosure.places.keys import ANALYSED, EVENT, NONE, Names, everyone
+from fourfold.results import tree
+
+TINY_FILE = 10
+"""A file of fewer rows than this times the limit could be guessed row by row from its hash."""
+
+
+def hide(results: tree.Results) -> tree.Results:
+    """Hide every small count of the tree and everything that would give one away.
+
+    Parameters
+    ----------
+    results : tree.Results
+        ``analysis.smallest_count`` and ``analysis.hide_zero`` say which counts are small.
+
+    Returns
+    -------
+    tree.Results
+        Hidden fields are None and named in the ``hidden`` mapping of their owner: ``small``,
+        ``subtraction`` (would reveal a small one) or ``derived`` (computed from a hidden one).
+    """
+    limit = Limit.of(results.analysis)
+    if not (results.analysis.show_people and not limit.active):
+        results = _without_people(results)
+    if not limit.active:
+        return results
+    names = Names.of(results)
+    ledger = ledger_of(results, limit)
+    secondary.choose(ledger)
+    hidden = {path: _reason(ledger, path) for path in ledger.at if ledger.is_hidden(ledger.at[path])}
+    hidden |= {
+        path: DERIVED for path, keys in ledger.derived.items() if any(ledger.is_hidden(key) for key in keys)
+    }
+    hidden |= {path: hidden.get(path, DERIVED) for path in fit.figures(results, ledger, names)}
+    rounded = {
+        path: decimals
+        for path, (keys, decimals) in ledger.rounded.items()
+        if any(ledger.is_hidden(key) for key in keys)
+    }
+    hiding = rewrite.hide_at(rewrite.round_at(results, rounded), hidden)
+    hiding = _with_notes(hiding, hidden)
+    hiding = _joined(hiding, ledger)
+    hiding = replace(hiding, findings=findings.hide(results.findings, ledger))
+    return _without_hash(hiding, ledger)
+
+
+def ledger_of(results: tree.Results, limit: Limit) -> Ledger:
+    """The settled ledger of a tree: every count that stands in it and how they add up."""
+    ledger, names = Ledger(limit), Names.of(results)
+    flow.enter(results, ledger, names)
+    analysed.enter(results, ledger, names)
+    characteristics.enter(results, ledger, names)
+    flow.relate_patterns(results, ledger, names)
+    joint.relate(results, ledger, names)
+    fitted_risks.enter(results, ledger)
+    audit.enter(results, ledger)
+    if results.sample_size is not None:
+        ledger.derive(("sample_size", "events_per_parameter"), [everyone(ANALYSED, EVENT)])
+    ledger.settle()
+    return ledger
+
+
+def _reason(ledger: Ledger, path: Path) -> str:
+    return ledger.counts[ledger.at[path]].hidden or DERIVED
+
+
+def _with_notes(results: tree.Results, hidden: dict[Path, str]) -> tree.Results:
+    """Say of each odds ratio that went that it is hidden; a note on separation would tell a zero."""
+
+    def noted(kind: str) -> list[tree.Estimate]:
+        return [
+            replace(estimate, note="hidden", hidden={**estimate.hidden, "odds_ratio": DERIVED})
+            if ("estimates", kind, place, "odds_ratio") in hidden
+            else estimate
+            for place, estimate in enumerate(getattr(results.estimates, kind))
+        ]
+
+    return replace(results, estimates=tree.Estimates(crude=noted("crude"), adjusted=noted("adjusted")))
+
+
+def _joined(results: tree.Results, ledger: Ledger) -> tree.Results:
+    """Groups, bins and the ROC curve, joined or thinned until each step may be told."""
+    limit, confidence = ledger.limit, results.analysis.confidence
+    totals = [everyone(ANALYSED, outcome) for outcome in (EVENT, NONE)]
+    known = not any(ledger.is_hidden(key) for key in (everyone(ANALYSED), *totals))
+    calibration, discrimination = results.calibration, results.discrimination
+    whole = known and ("auc" not in discrimination.hidden if discrimination is not None else True)
+    if calibration is not None:
+        calibration = (
+            groups.calibration(calibration, limit, confidence)
+            if whole
+            else _emptied(calibration, "groups", "curve")
+        )
+    if discrimination is not None:
+        events, non_events = (ledger.counts[key].value if whole else None for key in totals)
+        discrimination = roc.thin(discrimination, events, non_events, limit)
+    by_quantity = [
+        groups.outcome_by_quantity(one, limit, confidence) if known else _emptied(one, "bins", "curve")
+        for one in results.outcome_by_quantity
+    ]
+    return replace(
+        results,
+        calibration=calibration,
+        discrimination=discrimination,
+        outcome_by_quantity=by_quantity,
+    )
+
+
+def _emptied(value: Any, *names: str) -> Any:
+    filled = [name for name in names if getattr(value, name)]
+    if not filled:
+        return value
+    told = dict.fromkeys(filled, DERIVED)
+    return replace(value, **{name: [] for name in filled}, hidden={**value.hidden, **told})
+
+
+def _without_people(results: tree.Results) -> tree.Results:
+    if not any(one.points for one in results.outcome_by_quantity):
+        return results
+    return replace(
+        results, outcome_by_quantity=[replace(one, points=[]) for one in results.outcome_by_quantity]
+    )
+
+
+def _without_hash(results: tree.Results, ledger: Ledger) -> tree.Results:
+    """Take the hash of a tiny file away if anything of it is hidden: it would confirm a guess."""
+    found = results.provenance
+    rows = found.rows_read if found.rows_read is not None else results.participants.read
+    tiny = rows is None or rows < TINY_FILE * ledger.limit.smallest
+    if not tiny or found.data_sha256 is None or not any(_marks(results)):
+        return results
+    provenance = replace(found, data_sha256=None, hidden={**found.hidden, "data_sha256": DERIVED})
+    return replace(results, provenance=provenance)
+
+
+def _marks(value: Any) -> Iterator[str]:
+    """Every reason given anywhere in the tree."""
+    if is_dataclass(value) and not isinstance(value, type):
+        for field in fields(value):
+            if field.name == "hidden":
+                yield from getattr(value, field.name).values()
+            else:
+                yield from _marks(getattr(value, field.name))
+    elif isinstance(value, list):
+        for item in value:
+            yield from _marks(item)
