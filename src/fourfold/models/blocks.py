@@ -44,7 +44,7 @@ class Blocks:
         if self.array.ndim != 3 or self.array.dtype != np.float64:
             raise ValueError("blocks are a float64 array of shape (blocks, columns, width)")
         n_blocks, _, width = self.array.shape
-        if not n_blocks * width >= self.n > (n_blocks - 1) * width:
+        if not n_blocks * width >= self.n > (n_blocks - 1) * width and self.n != 0:
             raise ValueError(f"{n_blocks} blocks of {width} rows do not hold {self.n} rows")
 
     @classmethod

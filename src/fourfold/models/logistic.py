@@ -157,8 +157,7 @@ def _start(observed: Observed, evaluate: LogLikelihood) -> Array:
     cold = np.zeros(observed.blocks.p)
     intercept = constant_column(observed.blocks)
     if intercept is not None:
-        share = observed.events / observed.people
-        cold[intercept] = np.log(share / (1 - share)) / observed.blocks.array[0, intercept, 0]
+        cold[intercept] = _log_odds_less_offset(observed) / observed.blocks.array[0, intercept, 0]
     part = _part(observed.blocks)
     if part is None:
         return cold
@@ -177,6 +176,15 @@ def _start(observed: Observed, evaluate: LogLikelihood) -> Array:
     if not approach.converged or curvature is None:
         return cold
     return _approach(evaluate, approach.coefficients, curvature, observed.people)
+
+
+def _log_odds_less_offset(observed: Observed) -> float:
+    """The intercept of the null model, but for the offset's spread."""
+    share = observed.events / observed.people
+    log_odds = float(np.log(share / (1 - share)))
+    if observed.offset is None:
+        return log_odds
+    return log_odds - float(np.average(observed.offset, weights=observed.counts))
 
 
 def _part(blocks: Blocks) -> Part | None:
@@ -269,4 +277,5 @@ def null_log_likelihood(observed: Observed) -> float:
     alone = Observed(
         Blocks.from_matrix(np.ones((observed.blocks.n, 1))), observed.event, observed.counts, observed.offset
     )
-    return maximise(LogLikelihood(alone), np.zeros(1), observed.people).sums.log_likelihood
+    start = np.array([_log_odds_less_offset(observed)])
+    return maximise(LogLikelihood(alone), start, observed.people).sums.log_likelihood

@@ -16,6 +16,10 @@ Evaluate = Callable[[Array], Sums]
 ITERATIONS = 50
 HALVINGS = 30
 
+SINGULAR = 1e-14
+"""Pivots of a scaled information matrix below this are rounding: the columns depend on each other
+to 1e-7 of their spread (``rank.TOLERANCE``)."""
+
 
 @dataclass(frozen=True, slots=True)
 class Curvature:
@@ -29,7 +33,7 @@ class Curvature:
 
     @classmethod
     def of(cls, information: Array) -> Curvature | None:
-        """Factor an information matrix; None if it is not positive definite."""
+        """Factor an information matrix; None if it is singular but for rounding."""
         diagonal = np.diagonal(information)
         if not bool(np.all(diagonal > 0) and np.all(np.isfinite(information))):
             return None
@@ -37,6 +41,8 @@ class Curvature:
         try:
             factor = np.linalg.cholesky(information * scale[:, None] * scale)
         except np.linalg.LinAlgError:
+            return None
+        if float(np.diagonal(factor).min()) ** 2 < SINGULAR:
             return None
         return cls(scale, np.asarray(factor, dtype=np.float64))
 
