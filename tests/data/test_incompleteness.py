@@ -53,6 +53,11 @@ def test_the_test_chosen_and_its_p_value(a: int, b: int, c: int, d: int) -> None
         assert (test, p_value) == ("chi-squared", pytest.approx(chi2.pvalue, rel=1e-9))
 
 
+def test_limits_at_another_level() -> None:
+    # Closed form: exp(log 4.7142857 -/+ 1.6448536 x 0.580714592).
+    assert woolf(12, 28, 5, 55, 90) == pytest.approx((4.714286, 1.813769, 12.253210), rel=1e-6)
+
+
 def test_no_odds_ratio_beside_an_empty_cell() -> None:
     assert woolf(0, 28, 5, 55) == (None, None, None)
 

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Sequence
+from statistics import NormalDist
 
 import numpy as np
 from numpy.typing import NDArray
@@ -12,7 +13,6 @@ from fourfold.data.columns import Rows
 from fourfold.results import tree
 
 Mask = NDArray[np.bool_]
-NORMAL_975 = 1.959963984540054
 SMALL_EXPECTED = 5.0
 """Below this expected count Fisher's test replaces chi-squared (common practice)."""
 
@@ -55,12 +55,12 @@ def missing_patterns(rows: Rows, names: Sequence[str]) -> list[tree.MissingPatte
 
 
 def associations_with_outcome(
-    rows: Rows, outcome: str, names: Sequence[str]
+    rows: Rows, outcome: str, names: Sequence[str], confidence: float = 95.0
 ) -> list[tree.MissingAssociation]:
     """Is lacking a value associated with the outcome? One 2 x 2 table for each incomplete variable.
 
     Over the rows whose outcome is known. The odds ratio (incomplete against complete) has Woolf's
-    95% limits, and none where a cell is zero.
+    limits of ``confidence`` percent, and none where a cell is zero.
     """
     values = rows.columns[outcome].values
     known, event = ~np.isnan(values), values == 1
@@ -72,7 +72,7 @@ def associations_with_outcome(
         a, b = rows.count(lacks & event), rows.count(lacks & known & ~event)
         c, d = rows.count(~lacks & event), rows.count(~lacks & known & ~event)
         p_value, test = compare(a, b, c, d)
-        odds_ratio, lower, upper = woolf(a, b, c, d)
+        odds_ratio, lower, upper = woolf(a, b, c, d, confidence)
         answer.append(
             tree.MissingAssociation(
                 variable=name,
@@ -90,8 +90,10 @@ def associations_with_outcome(
     return answer
 
 
-def woolf(a: int, b: int, c: int, d: int) -> tuple[float | None, float | None, float | None]:
-    """Odds ratio of a 2 x 2 table with Woolf's 95% limits; None where a zero cell leaves none.
+def woolf(
+    a: int, b: int, c: int, d: int, confidence: float = 95.0
+) -> tuple[float | None, float | None, float | None]:
+    """Odds ratio of a 2 x 2 table with Woolf's limits; None where a zero cell leaves none.
 
     References
     ----------
@@ -100,7 +102,7 @@ def woolf(a: int, b: int, c: int, d: int) -> tuple[float | None, float | None, f
     if min(a, b, c, d) == 0:
         return None, None, None
     log_odds_ratio = math.log(a) - math.log(b) - math.log(c) + math.log(d)
-    half = NORMAL_975 * math.sqrt(1 / a + 1 / b + 1 / c + 1 / d)
+    half = NormalDist().inv_cdf((1 + confidence / 100) / 2) * math.sqrt(1 / a + 1 / b + 1 / c + 1 / d)
     return math.exp(log_odds_ratio), math.exp(log_odds_ratio - half), math.exp(log_odds_ratio + half)
 
 

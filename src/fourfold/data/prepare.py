@@ -102,7 +102,9 @@ def prepare(loaded: Loaded) -> Prepared:
         crude_rows=_crude_rows(description, eligible),
         missing=missing_by_variable(eligible, needed),
         patterns=missing_patterns(eligible, needed),
-        missing_associations=associations_with_outcome(eligible, description.outcome, needed),
+        missing_associations=associations_with_outcome(
+            eligible, description.outcome, needed, description.analysis.confidence
+        ),
         duplicated_identifiers=_repeated_identifiers(description, table, kept),
         duplicated_rows=_identical_rows(description, table, kept),
     )
