@@ -9,7 +9,7 @@ from pydantic import field_validator, model_validator
 
 from fourfold.description.scalars import Code, Day, Text, refusal
 from fourfold.description.section import Section, key
-from fourfold.description.wording import listed, quoted
+from fourfold.description.wording import quoted
 
 _DELIMITERS = {
     "comma": ",",
@@ -156,7 +156,7 @@ class DataSource(Section):
     def _as_character(cls, value: str | None) -> str | None:
         if value is not None and value not in _DELIMITERS:
             raise refusal(
-                f"expects {listed(_DELIMITERS)}; found {quoted(value)}.",
+                f"expects comma, semicolon, tab or bar; found {quoted(value)}.",
                 'Write the word, or the character in quotation marks, as in ";".',
             )
         return _DELIMITERS[value] if value is not None else None

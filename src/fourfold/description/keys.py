@@ -68,6 +68,9 @@ def explain(key: str | None) -> str:
     if answered:
         names = listed((one.dotted for one in answered), "and")
         return f"{quoted(word)} is no key; this is what answers to it: {names}.\n\n{_all_help(answered)}"
+    refused = [text for (_, known), text in later.KEYS.items() if known == word.lower()]
+    if refused:
+        return fill(f"{quoted(word)} is not a key that this version acts on. {refused[0]}", WIDTH)
     known = [one.name for one in outline().values()] + [one.dotted for one in outline().values()]
     close = nearest(word, known)
     hint = f"Did you mean {quoted(close)}? " if close is not None else ""

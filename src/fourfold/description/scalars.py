@@ -34,7 +34,7 @@ _NUMBER_ADVICE = (
     (r"[-+]?0[0-9]+.*", "Write it without leading zeros; a code with leading zeros belongs among levels."),
     (r"[0-9]+(?::[0-9]+)+", "A time or ratio is no number; give it in one unit, as in 90."),
     (r"[-+]?[0-9.]+ ?%", "Write it without the percent sign."),
-    (r"[-+]?[0-9.]+ ?[^\W\d_].*", "Write the number alone; a unit belongs under `unit:`."),
+    (r"[-+]?[0-9][0-9.]* ?[^\W\d_].*", "Write the number alone; a unit belongs under `unit:`."),
 )
 
 
