@@ -226,6 +226,18 @@ def test_invisible_characters_are_refused_and_never_repeated(changed: Changed, e
     assert "\x1b" not in str(problem)
 
 
+def test_names_with_escapes_do_not_reach_the_terminal(refused: Any) -> None:
+    names = (r'"\e[31m": x', r'"\e[31m": {"\e[2J": [1]}', r'"\e[31m": ANSWER', r'"\e[31m": ["\e"]')
+    for name in names:
+        for text in (
+            SMALL + name,
+            SMALL.replace("  seen:", f"  {name}\n  seen:"),
+            SMALL + f"report: {{{name}}}",
+        ):
+            for problem in refused(text):
+                assert str(problem).replace("\n    ", "").isprintable()
+
+
 def test_a_text_of_any_length_is_not_repeated_in_the_message(changed: Changed) -> None:
     problem = changed("kind: quantity", "kind: " + "q" * 5000)
     assert len(problem.what) < 250

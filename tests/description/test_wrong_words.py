@@ -165,6 +165,29 @@ def test_a_share_in_place_of_a_percentage(changed: Changed) -> None:
     assert changed("outcome:", "analysis: {confidence: 0.9}\noutcome:").advice == "Write 90."
 
 
+def test_the_open_questions_of_a_draft_are_listed_and_nothing_else(refused: Any) -> None:
+    text = (
+        SMALL.replace("Wound infection in Quillmere", "ANSWER")
+        .replace("cohort", "ANSWER")
+        .replace("outcome: infection", "outcome: ANSWER")
+        .replace("[smoker]", "[ANSWER]")
+        .replace("present: yes", "present: ANSWER", 1)
+        .replace("[North, South]", '["ANSWER", South]')  # quoted: a level of that name
+    )
+    problems = refused(text)
+    assert [problem.what.split("`")[1] for problem in problems] == [
+        "title",
+        "design",
+        "present",
+        "outcome",
+        "exposures",
+    ]
+    for problem in problems:
+        assert "is still to be answered" in problem.what
+        line = text.splitlines()[problem.where.line - 1]
+        assert line[problem.where.column - 1 :].startswith("ANSWER")
+
+
 def test_all_errors_come_at_once_and_in_order(refused: Any) -> None:
     text = (
         SMALL.replace("design: cohort", "design: kohort")

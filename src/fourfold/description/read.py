@@ -11,6 +11,8 @@ from typing import TYPE_CHECKING
 from fourfold.description.compose import compose
 from fourfold.description.node import Positions
 from fourfold.description.source_text import read_text
+from fourfold.description.unanswered import unanswered
+from fourfold.description.wording import visible
 from fourfold.errors import DescriptionError, Position, Problem
 
 if TYPE_CHECKING:
@@ -89,6 +91,7 @@ def parse(text: str, path: Path, *, allow_outside: bool = False) -> tuple[StudyD
     from fourfold.description.model import StudyDescription
     from fourfold.description.refusals import problems_of
 
+    problems += islice(unanswered(root, str(path)), MOST_COLLECTED)
     positions = Positions(str(path), root)
     data = root.plain_data()
     description = None
@@ -108,8 +111,9 @@ def parse(text: str, path: Path, *, allow_outside: bool = False) -> tuple[StudyD
 
 
 def _in_order(problems: Iterable[Problem], file: str) -> list[Problem]:
-    """By place in the file, without repeats; a flood is cut off and counted."""
-    ordered = sorted(dict.fromkeys(problems), key=_place)
+    """By place in the file, without repeats and without characters a terminal acts on; a flood is cut off."""
+    clean = (Problem(visible(each.what), visible(each.advice), each.where) for each in problems)
+    ordered = sorted(dict.fromkeys(clean), key=_place)
     if len(ordered) > MOST_PROBLEMS:
         more = Problem(
             f"There are more than {MOST_PROBLEMS} problems; the first of them are listed.",
