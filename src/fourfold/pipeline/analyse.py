@@ -74,7 +74,7 @@ def results_of(loaded: Loaded, prepared: Prepared, progress: Progress) -> tree.R
             sample_size=trust.sample_size_of(adjusted, analysis, design),
             influence=trust.influence_of(adjusted, log_odds, variables, analysis),
             collinearity=trust.collinearity_of(adjusted, variables),
-            curves=shapes.odds_ratio_curves(adjusted, variables, description, rows, analysis),
+            curves=shapes.odds_ratio_curves(adjusted, variables, rows, analysis),
             outcome_by_quantity=shapes.outcome_by_quantity(
                 rows, event, variables, analysis, description.analysis.seed
             ),
@@ -105,6 +105,7 @@ def analysis_of(loaded: Loaded) -> tree.Analysis:
         weights_stated=sampling.weights if sampling else None,
         matched_on=list(sampling.matched_on) if sampling else [],
         follow_up=list(follow_up.statement) if follow_up else [],
+        follow_up_variable=follow_up.variable if follow_up else None,
         exposure_measured=follow_up.exposure_measured if follow_up else None,
         language=description.report.language,
     )

@@ -166,7 +166,7 @@ def _contrasts(
                 events=events,
                 total=total,
                 contrast=[float(start), float(end)],
-            )  # fmt: skip
+            )
         )
     return answer
 

@@ -35,7 +35,6 @@ def comparisons(
 def odds_ratio_curves(
     model: FittedModel,
     variables: Sequence[tree.Variable],
-    description: StudyDescription,
     rows: Rows,
     analysis: tree.Analysis,
 ) -> list[tree.OddsRatioCurve]:
@@ -47,7 +46,8 @@ def odds_ratio_curves(
         if term.shape not in SHAPED or (model.separation.direction[columns] != 0).any():
             continue
         variable = by_name[term.variable]
-        reference = reference_value(variable.name, description, rows)
+        # Stated, or the median that the data stage settled on: what is printed and drawn is one value.
+        reference = float(variable.reference or 0.0)
         low, high = np.quantile(_people(rows, variable.name), [0.01, 0.99])
         at = np.unique(np.append(np.linspace(min(low, reference), max(high, reference), POINTS), reference))
         curves.append(
@@ -69,12 +69,6 @@ def odds_ratio_curves(
             )
         )
     return curves
-
-
-def reference_value(name: str, description: StudyDescription, rows: Rows) -> float:
-    """The stated reference of a shaped quantity, else the median of the analysis set."""
-    stated = description.variables[name].reference
-    return float(stated) if stated is not None else float(np.median(_people(rows, name)))
 
 
 def outcome_by_quantity(

@@ -27,6 +27,8 @@ CASE_CONTROL = "case-control"
 WITHHELD = "sampled by outcome"
 """Why a case-control study has no intercept, no risk and nothing computed from risk."""
 
+DEFAULT_GROUPS = 10
+
 
 def model_of(model: FittedModel, log_odds: Array, design: str) -> tree.Model:
     """The adjusted model as the results file holds it; no intercept for a case-control study."""
@@ -79,16 +81,28 @@ def discrimination_of(model: FittedModel, log_odds: Array, analysis: tree.Analys
 def calibration_of(
     model: FittedModel, log_odds: Array, analysis: tree.Analysis, design: str, groups: int | None
 ) -> tree.Calibration:
-    """Calibration on the fitting data; ``groups`` None lets the size of the sample decide."""
-    return calibration.calibration(
-        expit(log_odds),
-        model.event,
-        model.counts,
-        groups=groups,
-        confidence=analysis.confidence,
-        log_odds=log_odds,
-        withheld=WITHHELD if design == CASE_CONTROL else None,
-    )
+    """Calibration on the fitting data; ``groups`` None lets the size of the sample decide.
+
+    The number of groups by size keeps the power of Hosmer and Lemeshow's test steady, but with few
+    events it makes groups too thin for the test: ten are then used.
+    """
+
+    def judged(number: int | None) -> tree.Calibration:
+        return calibration.calibration(
+            expit(log_odds),
+            model.event,
+            model.counts,
+            groups=number,
+            confidence=analysis.confidence,
+            log_odds=log_odds,
+            withheld=WITHHELD if design == CASE_CONTROL else None,
+        )
+
+    found = judged(groups)
+    test = found.hosmer_lemeshow
+    if groups is None and test is not None and test.verdict == "thin groups" and test.groups > DEFAULT_GROUPS:
+        return judged(DEFAULT_GROUPS)
+    return found
 
 
 def risk_distribution_of(model: FittedModel, log_odds: Array, design: str) -> list[tree.RiskBin]:
