@@ -42,6 +42,24 @@ MORE_DECIMALS = 3
 
 
 @dataclass(frozen=True, slots=True)
+class Withheld:
+    """Stands for a hidden value where words are made from it: ``reason`` as in a ``hidden`` mapping.
+
+    It is neither less nor more than any number, so that a text which asks says neither.
+    """
+
+    reason: str
+
+    def __lt__(self, other: object) -> bool:
+        return False
+
+    __gt__ = __le__ = __ge__ = __lt__
+
+
+Printable = float | Withheld | None
+
+
+@dataclass(frozen=True, slots=True)
 class Numbers:
     """Numbers of one study in print.
 
@@ -60,7 +78,7 @@ class Numbers:
     absent: str = ABSENT
     between: str = " to "
 
-    def count(self, n: float | None, hidden: str | None = None) -> str:
+    def count(self, n: Printable, hidden: str | None = None) -> str:
         """A count of rows or people: ``1,204``, ``fewer than 5``, ``hidden`` or a dash.
 
         Parameters
@@ -69,14 +87,14 @@ class Numbers:
         hidden : str or None
             Why ``n`` is None: ``small``, ``subtraction`` or ``derived``.
         """
-        if n is None:
-            if hidden == "small":
+        if n is None or isinstance(n, Withheld):
+            if _reason(n, hidden) == "small":
                 return self.fewer_than.format(limit=self.smallest_count)
-            return self._missing(hidden)
+            return self._missing(n, hidden)
         return _print(n, 0)
 
     def percent(
-        self, share_percent: float | None, denominator: int | None = None, hidden: str | None = None
+        self, share_percent: Printable, denominator: int | None = None, hidden: str | None = None
     ) -> str:
         """A percentage with its sign: ``37%``, ``12.4%``; empty where fewer than 20 people stand under it.
 
@@ -88,8 +106,8 @@ class Numbers:
             People under the percentage. None for what is no share of counted people, such as a
             fitted risk: one decimal under 10% and above 90%, else whole.
         """
-        if share_percent is None:
-            return self._missing(hidden)
+        if share_percent is None or isinstance(share_percent, Withheld):
+            return self._missing(share_percent, hidden)
         share = _exact(share_percent)
         if denominator is not None:
             if denominator < LEAST_FOR_PERCENT:
@@ -105,30 +123,32 @@ class Numbers:
             return f">{_grouped(100 - step)}%"
         return f"{_grouped(rounded)}%"
 
-    def risk(self, probability: float | None, denominator: int | None = None) -> str:
+    def risk(self, probability: Printable, denominator: int | None = None) -> str:
         """A probability from 0 to 1 as a percentage."""
-        return self.percent(None if probability is None else 100 * probability, denominator)
+        if probability is None or isinstance(probability, Withheld):
+            return self._missing(probability, None)
+        return self.percent(100 * probability, denominator)
 
-    def odds_ratio(self, ratio: float | None, hidden: str | None = None) -> str:
+    def odds_ratio(self, ratio: Printable, hidden: str | None = None) -> str:
         """An odds ratio, risk ratio or any other ratio without its interval."""
-        if ratio is None:
-            return self._missing(hidden)
+        if ratio is None or isinstance(ratio, Withheld):
+            return self._missing(ratio, hidden)
         exact = _exact_ratio(ratio)
         return _beyond(exact) or _print(exact, _ratio_decimals(exact))
 
-    def limit(self, value: float | None, like: float | None = None) -> str:
+    def limit(self, value: Printable, like: Printable = None) -> str:
         """One limit of a ratio, with the decimals of the ratio it belongs to.
 
         A limit that is not 1 but would read as 1, or that would read as 0, is given more decimals.
         """
-        if value is None:
-            return self.absent
+        if value is None or isinstance(value, Withheld):
+            return self._missing(value, None)
         exact = _exact_ratio(value)
         beyond = _beyond(exact)
         if beyond:
             return beyond
-        own = _ratio_decimals(exact)
-        decimals = own if like is None else _ratio_decimals(_exact_ratio(like))
+        estimate = exact if like is None or isinstance(like, Withheld) else _exact_ratio(like)
+        decimals = _ratio_decimals(estimate)
         for more in range(decimals, MOST_LIMIT_DECIMALS + 1):
             rounded = _round(exact, more)
             if rounded != 0 and (rounded != 1 or exact == 1):
@@ -137,30 +157,30 @@ class Numbers:
         return _print(exact, decimals)
 
     def interval(
-        self, lower: float | None, upper: float | None, like: float | None = None, hidden: str | None = None
+        self, lower: Printable, upper: Printable, like: Printable = None, hidden: str | None = None
     ) -> str:
         """Limits of a ratio: ``1.16 to 5.64``, with the decimals of the estimate ``like``."""
-        if lower is None and upper is None:
-            return self._missing(hidden)
+        if not (_printed(lower) or _printed(upper)):
+            return self._missing(lower if isinstance(lower, Withheld) else None, hidden)
         return f"{self.limit(lower, like)}{self.between}{self.limit(upper, like)}"
 
-    def p_value(self, p: float | None, hidden: str | None = None) -> str:
+    def p_value(self, p: Printable, hidden: str | None = None) -> str:
         """A P-value alone: ``0.03``, ``0.052``, ``<0.001``, ``>0.99``; never 0.000."""
         sign, text = self._p(p, hidden)
         return f"{sign}{text}"
 
-    def p_phrase(self, p: float | None, hidden: str | None = None) -> str:
+    def p_phrase(self, p: Printable, hidden: str | None = None) -> str:
         """A P-value in a sentence: ``P = 0.03``, ``P < 0.001``."""
         sign, text = self._p(p, hidden)
-        return f"P {sign or '='} {text}" if p is not None else text
+        return f"P {sign or '='} {text}" if _printed(p) else text
 
-    def number(self, x: float | None, digits: int | None = None, hidden: str | None = None) -> str:
+    def number(self, x: Printable, digits: int | None = None, hidden: str | None = None) -> str:
         """Any other number with ``digits`` decimals; None prints it as it was recorded.
 
         At most four decimals, or four significant figures under 0.1, are taken as recorded.
         """
-        if x is None:
-            return self._missing(hidden)
+        if x is None or isinstance(x, Withheld):
+            return self._missing(x, hidden)
         exact = _exact(x)
         if exact == 0:
             return "0"
@@ -174,15 +194,15 @@ class Numbers:
         step = Decimal(1).scaleb(-digits)
         return f"<{_grouped(step)}" if exact > 0 else f">{_grouped(-step)}"
 
-    def mean_sd(self, mean: float | None, sd: float | None, decimals: int, hidden: str | None = None) -> str:
+    def mean_sd(self, mean: Printable, sd: Printable, decimals: int, hidden: str | None = None) -> str:
         """Mean and standard deviation, ``54.3 (12.1)``, of values recorded to ``decimals``."""
-        if mean is None:
-            return self._missing(hidden)
+        if mean is None or isinstance(mean, Withheld):
+            return self._missing(mean, hidden)
         return f"{self.number(mean, decimals + 1)} ({self.number(sd, decimals + 1)})"
 
-    def _p(self, p: float | None, hidden: str | None) -> tuple[str, str]:
-        if p is None:
-            return "", self._missing(hidden)
+    def _p(self, p: Printable, hidden: str | None) -> tuple[str, str]:
+        if p is None or isinstance(p, Withheld):
+            return "", self._missing(p, hidden)
         exact = _exact(p)
         if not 0 <= exact <= 1:
             raise ValueError(f"a P-value lies between 0 and 1, not {p!r}")
@@ -195,8 +215,8 @@ class Numbers:
             return "", _print(exact, 3)
         return "", _grouped(two)
 
-    def _missing(self, hidden: str | None) -> str:
-        return self.absent if hidden is None else self.hidden_word
+    def _missing(self, value: Withheld | None, hidden: str | None) -> str:
+        return self.absent if _reason(value, hidden) is None else self.hidden_word
 
 
 def join_words(words: Sequence[str], last: str = " and ") -> str:
@@ -227,6 +247,14 @@ def filters(numbers: Numbers, labels: Mapping[str, str] | None = None) -> dict[s
         "label": lambda name: named.get(name, name),
         "join_words": join_words,
     }
+
+
+def _printed(value: Printable) -> bool:
+    return value is not None and not isinstance(value, Withheld)
+
+
+def _reason(value: Withheld | None, hidden: str | None) -> str | None:
+    return value.reason if isinstance(value, Withheld) else hidden
 
 
 def _exact(x: float) -> Decimal:

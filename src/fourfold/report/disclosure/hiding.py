@@ -68,7 +68,8 @@ def hide(results: tree.Results) -> tree.Results:
     hiding = rewrite.hide_at(rewrite.round_at(results, rounded), hidden)
     hiding = _with_notes(hiding, hidden)
     hiding = _joined(hiding, ledger)
-    hiding = replace(hiding, findings=findings.hide(results.findings, ledger))
+    hiding = replace(hiding, findings=[])
+    hiding = replace(hiding, findings=findings.hide(results.findings, ledger, _doubles(hiding)))
     return _without_hash(hiding, ledger)
 
 
@@ -159,6 +160,18 @@ def _without_hash(results: tree.Results, ledger: Ledger) -> tree.Results:
         return results
     provenance = replace(found, data_sha256=None, hidden={**found.hidden, "data_sha256": DERIVED})
     return replace(results, provenance=provenance)
+
+
+def _doubles(value: Any) -> Iterator[float]:
+    """Every double anywhere in the tree."""
+    if isinstance(value, float):
+        yield value
+    elif is_dataclass(value) and not isinstance(value, type):
+        for field in fields(value):
+            yield from _doubles(getattr(value, field.name))
+    elif isinstance(value, list):
+        for item in value:
+            yield from _doubles(item)
 
 
 def _marks(value: Any) -> Iterator[str]:

@@ -2,84 +2,97 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Sequence
-from dataclasses import replace
-from typing import Any
+from collections.abc import Iterable, Sequence
+from dataclasses import dataclass
 
+from fourfold.findings import catalogue, places
 from fourfold.report.disclosure.ledger import DERIVED, SMALL, SUBTRACTION, Ledger
+from fourfold.report.disclosure.places.keys import ALL, ANALYSED, ELIGIBLE, EVENT, NONE, everyone
 from fourfold.results import tree
 
+WHOLE = [everyone(ANALYSED, outcome) for outcome in (ALL, EVENT, NONE)] + [everyone(ELIGIBLE)]
 
-def hide(found: Sequence[tree.Finding], ledger: Ledger) -> list[tree.Finding]:
+
+@dataclass(frozen=True, slots=True)
+class _Known:
+    """What the rest of the tree hides and shows.
+
+    Attributes
+    ----------
+    values : counts hidden for others' sake
+    about : variables of which a count is hidden
+    totals : hidden totals
+    shown : doubles that stand elsewhere in the tree for all to see
+    """
+
+    values: frozenset[int]
+    about: frozenset[str]
+    totals: frozenset[int | None]
+    shown: frozenset[float]
+
+
+def hide(found: Sequence[tree.Finding], ledger: Ledger, shown: Iterable[float]) -> list[tree.Finding]:
     """Findings without what may not be told; the finding itself stays.
 
     A finding names its counts but not which people they count, so the rule is strict: where one
-    count of a finding is small, or equals one that is hidden elsewhere, all its counts go, and
-    what is derived from counts goes with them.
+    count of a finding (or of one item in it) is small, or equals one that is hidden elsewhere,
+    all its counts go, and what is derived from counts goes with them.
+
+    Parameters
+    ----------
+    found : sequence of tree.Finding
+    ledger : Ledger
+        With what is hidden.
+    shown : doubles
+        That the rest of the tree still shows: a finding may repeat them.
     """
-    elsewhere = {
-        count.value
-        for count in ledger.counts.values()
-        if count.hidden == SUBTRACTION and count.value is not None
-    }
-    touched = {part for key in ledger.counts if ledger.is_hidden(key) for part in key}
-    return [
-        _hidden(finding, ledger, elsewhere, touched)
-        for finding in found
-        if not _tells_a_zero(finding, ledger, touched)
-    ]
-
-
-def _hidden(finding: tree.Finding, ledger: Ledger, elsewhere: set[int], touched: set[str]) -> tree.Finding:
-    counts, derived = _sensitive(finding)
-    small = {name for name in counts if any(ledger.limit.small(n) for n in _numbers(finding.values[name]))}
-    revealing = small | {
-        name for name in counts if any(n in elsewhere for n in _numbers(finding.values[name]))
-    }
-    reasons: dict[str, str] = {}
-    if revealing:
-        reasons |= {name: SMALL if name in small else SUBTRACTION for name in counts}
-    if revealing or finding.hidden or touched & set(finding.about):
-        reasons |= dict.fromkeys(derived, DERIVED)
-    reasons = {name: reason for name, reason in reasons.items() if finding.values[name] is not None}
-    if not reasons:
-        return finding
-    return replace(
-        finding,
-        values={name: None if name in reasons else value for name, value in finding.values.items()},
-        hidden={**finding.hidden, **reasons},
+    hidden = [count for count in ledger.counts.values() if count.hidden == SUBTRACTION]
+    known = _Known(
+        frozenset(count.value for count in hidden if count.value is not None),
+        frozenset(part for key in ledger.counts if ledger.is_hidden(key) for part in key),
+        frozenset(ledger.counts[key].value for key in WHOLE if ledger.is_hidden(key)),
+        frozenset(shown),
     )
+    return [_hidden(one, ledger, known) for one in found if not _tells_a_zero(one, ledger, known)]
 
 
-def _sensitive(finding: tree.Finding) -> tuple[list[str], list[str]]:
-    """Names of the counts and of the derived figures among the values."""
-    from fourfold.findings import catalogue
+def _hidden(finding: tree.Finding, ledger: Ledger, known: _Known) -> tree.Finding:
+    found = catalogue.sensitive(finding)
+    counts = {one.path: one.value for one in found if one.kind == catalogue.COUNT}
+    small = {path for path, value in counts.items() if ledger.limit.small(value)}
+    revealing = small | {path for path, value in counts.items() if value in known.values}
+    # What stands beside a revealing count goes with it, and every total over the items.
+    beside = {path[:-1] for path in revealing}
 
-    entry = catalogue.CATALOGUE.get(finding.id)
-    if entry is None:
-        # A finding of another version: every whole number may be a count, the rest derived.
-        counts = [name for name, value in finding.values.items() if any(_numbers(value))]
-        return counts, [name for name, value in finding.values.items() if isinstance(value, float)]
-    return (
-        [name for name in entry.counts if name in finding.values],
-        [name for name in entry.derived if name in finding.values],
-    )
+    def goes(path: places.Path) -> bool:
+        return () in beside or path[:-1] in beside or (bool(revealing) and len(path) == 1)
 
-
-def _numbers(value: Any) -> Iterator[int]:
-    """Whole numbers anywhere in a value."""
-    if isinstance(value, bool):
-        return
-    if isinstance(value, int):
-        yield value
-    elif isinstance(value, dict):
-        for item in value.values():
-            yield from _numbers(item)
-    elif isinstance(value, list | tuple):
-        for item in value:
-            yield from _numbers(item)
+    reasons = {path: SMALL if path in small else SUBTRACTION for path in counts if goes(path)}
+    for one in found:
+        touched = bool(known.totals or known.about & _about(finding, one.path))
+        if one.kind == catalogue.DERIVED and (goes(one.path) or touched) and one.value not in known.shown:
+            reasons[one.path] = DERIVED
+    if known.totals:
+        for path, value in places.numbers(finding.values):
+            if value in known.totals:
+                reasons.setdefault(path, SUBTRACTION)
+    for path, reason in reasons.items():
+        if places.value_at(finding.values, path) is not None:
+            finding = catalogue.replace(finding, path, None, reason)
+    return finding
 
 
-def _tells_a_zero(finding: tree.Finding, ledger: Ledger, touched: set[str]) -> bool:
+def _about(finding: tree.Finding, path: places.Path) -> set[str]:
+    """The variables that a figure is about: those its item names, else all of the finding."""
+    owner = places.value_at(finding.values, path[:-1])
+    there = {str(value) for value in owner.values()} if isinstance(owner, dict) else set()
+    return there & set(finding.about) or set(finding.about)
+
+
+def _tells_a_zero(finding: tree.Finding, ledger: Ledger, known: _Known) -> bool:
     """Would the finding say of a hidden zero that it is one? Separation is nothing else."""
-    return ledger.limit.hide_zero and finding.id.startswith("SEP-") and bool(touched & set(finding.about))
+    return (
+        ledger.limit.hide_zero
+        and finding.id.startswith("SEP-")
+        and bool(known.about & set(finding.about) or not finding.about)
+    )
