@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass
 
+from fourfold.report.disclosure.withheld import values_of
 from fourfold.report.writer import Writer
 from fourfold.results import tree
 
@@ -37,8 +38,10 @@ def of_grade(found: Sequence[FindingWords], grade: str) -> list[FindingWords]:
 
 
 def _words(writer: Writer, finding: tree.Finding, place: int) -> FindingWords:
+    values = values_of(finding)
+
     def said(part: str) -> str:
-        return writer.say(f"findings.{finding.id}.{part}", **finding.values)
+        return writer.say(f"findings.{finding.id}.{part}", **values)
 
     return FindingWords(
         id=finding.id,
