@@ -192,3 +192,15 @@ def test_without_pango_the_page_stands_and_the_package_is_named(monkeypatch, err
     with pytest.raises(RenderingError) as caught:
         pdf.pdf(html.html(page.page(Writer.of(sample.cohort())), for_print=True), {})
     assert caught.value.exit_code == 6
+
+
+def test_a_failure_of_the_renderer_leaves_the_page(monkeypatch):
+    import weasyprint
+
+    def failing(*arguments: Any, **named: Any) -> bytes:
+        raise TypeError("min-content width for TextBox not handled yet")
+
+    monkeypatch.setattr(weasyprint.HTML, "write_pdf", failing)
+    rendered = build.render(sample.cohort())
+    assert list(rendered.files) == ["report.html"]
+    assert "min-content width for TextBox not handled yet" in rendered.problems[0].what

@@ -21,6 +21,9 @@ SHEETS = ("page", "table", "figure", "print")
 STYLE_MARK, POLICY_MARK = "\ue002", "\ue003"
 """Where the style sheet and its hash go; cleaned text never holds these characters."""
 
+PRINT_SCALE = 0.88
+"""Figures on paper against their size on the screen: their words then match the captions'."""
+
 TITLE_LENGTH = 90
 """Characters of a title in the running head of a printed page."""
 
@@ -36,6 +39,7 @@ def html(page: Page, *, for_print: bool = False) -> str:
         shows is in the style sheet.
     """
     environment = _environment(page.writer)
+    environment.filters["drawn"] = _drawn_for_print if for_print else drawn
     citations = Citations(page.writer.words)
     environment.filters["cited"] = citations.linked
     # Methods are read first, so that references are numbered in the order of the methods.
@@ -101,7 +105,6 @@ def _environment(writer: Writer) -> ImmutableSandboxedEnvironment:
         trim_blocks=True,
         lstrip_blocks=True,
     )
-    environment.filters["drawn"] = drawn
     environment.globals["language"] = writer.results.analysis.language
     return environment
 
@@ -109,3 +112,16 @@ def _environment(writer: Writer) -> ImmutableSandboxedEnvironment:
 def drawn(figure: Figure | str) -> Markup:
     """The SVG of a figure, which its writer has escaped already."""
     return Markup(figure if isinstance(figure, str) else figure.svg)
+
+
+_SIZE = re.compile(r' width="([0-9.]+)" height="([0-9.]+)" ')
+
+
+def _drawn_for_print(figure: Figure | str) -> Markup:
+    """The SVG at the size of paper; its viewBox, and so all that is in it, stays."""
+
+    def smaller(found: re.Match[str]) -> str:
+        width, height = (f"{float(side) * PRINT_SCALE:.1f}" for side in found.groups())
+        return f' width="{width}" height="{height}" '
+
+    return Markup(_SIZE.sub(smaller, str(drawn(figure)), count=1))

@@ -91,6 +91,10 @@ class Page:
     facts: Sequence[tuple[str, str]]
     provenance: Sequence[tuple[str, str]]
 
+    def noticed(self, section: str) -> list[FindingWords]:
+        """Serious findings and concerns that belong to a section; remarks wait under Findings."""
+        return [one for one in self.findings if one.section == section and one.grade != "remark"]
+
     @property
     def serious(self) -> list[FindingWords]:
         return [finding for finding in self.findings if finding.grade == "serious"]

@@ -22,6 +22,9 @@ if TYPE_CHECKING:
 NO_TIME = datetime(1970, 1, 1, tzinfo=UTC)
 """Stands where PDF wants a date; the time of a run is not part of a report."""
 
+RENDERER_FAILURES = (TypeError, ValueError, AttributeError, LookupError, AssertionError, RecursionError)
+"""What a layout engine raises on a layout that it does not know; the page must survive that."""
+
 PANGO = (
     "The PDF needs the library Pango, which is missing or cannot be loaded. On Debian or Ubuntu: "
     "apt install libpango-1.0-0 libpangoft2-1.0-0 libharfbuzz-subset0. On macOS: brew install pango. "
@@ -67,6 +70,11 @@ def pdf(page: str, attachments: dict[str, tuple[str, str]]) -> bytes:
     try:
         with _no_clock():
             made = document.write_pdf(pdf_variant="pdf/ua-1", attachments=attached)
+    except RENDERER_FAILURES as error:
+        raise RenderingError(
+            f"The PDF renderer failed: {type(error).__name__}, {_first_line(error)}.",
+            "The HTML report holds everything. Please report the failure, with the description if you can.",
+        ) from error
     except FatalURLFetchingError as error:
         raise RenderingError(
             f"The PDF was not made, because its page asked for something outside the report: {error}.",

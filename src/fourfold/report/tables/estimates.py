@@ -165,7 +165,7 @@ def variable_header(writer: Writer, variable: tree.Variable) -> str:
         f"labels.rows.quantity.{variable.shape}",
         label=variable.label,
         unit=variable.unit,
-        per=None if variable.per is None else writer.numbers.number(variable.per, None),
+        per=writer.numbers.number(1.0 if variable.per is None else variable.per, None),
         knots=len(variable.knots),
     )
 
