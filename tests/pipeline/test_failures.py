@@ -53,12 +53,18 @@ def in_namespace(script: str, *arguments: str) -> subprocess.CompletedProcess[st
 def test_disk_full_leaves_the_old_report(study, tmp_path):
     full = tmp_path / "full"
     full.mkdir()
-    script = """
+    script = (
+        """
         mount -t tmpfs -o size=96k tmpfs "$1" && mkdir "$1/out" && echo old > "$1/out/report.html"
         shift; "$@"; code=$?
-        ls -A "$0" >/dev/null 2>&1; echo "LEFT: $(ls -A """ + f'"{full}"' + """) $(cat """ + f'"{full}/out/report.html"' + """)"
+        ls -A "$0" >/dev/null 2>&1; echo "LEFT: $(ls -A """
+        + f'"{full}"'
+        + """) $(cat """
+        + f'"{full}/out/report.html"'
+        + """)"
         exit $code
     """
+    )
     ran = in_namespace(script, str(full), *FOURFOLD, "report", str(study), "--into", str(full / "out"))
     assert ran.returncode == 6, ran.stderr
     assert "The disk is full" in ran.stderr
@@ -116,7 +122,7 @@ def run_until(study: Path, stage: str, send: signal.Signals) -> tuple[int, str]:
 
 def test_ctrl_c_in_the_middle(study):
     folder = old_report(study.parent / "harvest-supper-report")
-    code, screen = run_until(study, "drawing the report", signal.SIGINT)
+    code, screen = run_until(study, "making the PDF", signal.SIGINT)
     assert code == 130, screen
     assert "Interrupted" in screen
     assert "Traceback" not in screen
@@ -127,7 +133,7 @@ def test_ctrl_c_in_the_middle(study):
 def test_killed_in_the_middle_and_run_again(study):
     folder = old_report(study.parent / "harvest-supper-report")
     (folder / "notes.txt").write_text("keep me")
-    code, _ = run_until(study, "drawing the report", signal.SIGKILL)
+    code, _ = run_until(study, "making the PDF", signal.SIGKILL)
     assert code == -signal.SIGKILL
     assert content(folder) == {**OLD, "notes.txt": b"keep me"}
     # A staging folder as a kill during the writing leaves it.

@@ -43,11 +43,13 @@ def say_check(done: Checked) -> None:
 
 
 def _paragraph(text: str) -> None:
-    click.echo(textwrap.fill(text, WIDTH))
+    click.echo(textwrap.fill(text, WIDTH, break_on_hyphens=False))
 
 
 def _item(text: str) -> None:
-    click.echo(textwrap.fill(text, WIDTH, initial_indent="  - ", subsequent_indent="    "))
+    click.echo(
+        textwrap.fill(text, WIDTH, initial_indent="  - ", subsequent_indent="    ", break_on_hyphens=False)
+    )
 
 
 def _counted(results: tree.Results) -> str:

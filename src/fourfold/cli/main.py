@@ -4,7 +4,9 @@ so that ``--help`` answers at once.
 
 from __future__ import annotations
 
+import os
 import sys
+import traceback
 from pathlib import Path
 from typing import Any
 
@@ -15,8 +17,12 @@ from fourfold.errors import FourfoldError
 
 EXIT_CODES = """
 Exit codes: 0 done; 1 done, but with --strict a serious finding; 2 wrong usage; 3 error in the
-description; 4 error in the data; 5 nothing can be fitted; 6 rendering failed; 130 interrupted.
+description; 4 error in the data; 5 nothing can be fitted; 6 rendering failed; 70 internal error
+(a fault in Fourfold; FOURFOLD_TRACEBACK=1 shows where); 130 interrupted.
 """
+
+INTERNAL_ERROR = 70
+"""As EX_SOFTWARE of the BSD sysexits."""
 
 
 class Commands(click.Group):
@@ -31,6 +37,24 @@ class Commands(click.Group):
         except KeyboardInterrupt:
             click.echo("\nInterrupted. Nothing was changed; an earlier report is as it was.", err=True)
             ctx.exit(130)
+        except MemoryError:
+            _complain(FourfoldError("There is not enough memory for this.", "Nothing was changed."))
+            ctx.exit(INTERNAL_ERROR)
+
+
+def _confess(fault: Exception) -> None:
+    """Say that a fault of the program stopped the work."""
+    # The fault's own message is left out: it can hold a value from somebody's row.
+    kind, place = type(fault).__name__, ""
+    for frame in traceback.extract_tb(fault.__traceback__):
+        place = f"{Path(frame.filename).name}:{frame.lineno}"
+    click.echo(
+        click.style("error: ", fg="red", bold=True, reset=True)
+        + f"internal error {kind} at {place}; nothing was changed.\n"
+        "    This is a fault in Fourfold, not in your files: please report it, with the description.\n"
+        "    FOURFOLD_TRACEBACK=1 shows where it happened.",
+        err=True,
+    )
 
 
 def _complain(error: FourfoldError) -> None:
@@ -65,7 +89,7 @@ _allow_outside = click.option(
 )
 
 
-@commands.command()
+@commands.command(short_help="The main job: from a description and its data to the report.")
 @_study_argument
 @click.option("--from", "saved", type=click.Path(path_type=Path), help="Render again from a results.json.")
 @click.option("--into", type=click.Path(path_type=Path), help="Folder for the report.")
@@ -114,7 +138,7 @@ def check(study: Path, strict: bool, allow_outside: bool) -> None:
         sys.exit(1)
 
 
-@commands.command()
+@commands.command(short_help="Write a first description from a data file.")
 @click.argument("data", type=click.Path(path_type=Path, dir_okay=False))
 @click.option("--table", help="Table of a sqlite or duckdb file, or sheet of a workbook.")
 @click.option("--output", type=click.Path(path_type=Path), help="File to write; standard output if absent.")
@@ -122,12 +146,15 @@ def draft(data: Path, table: str | None, output: Path | None) -> None:
     """Write a first study description from a data file, marking each guess."""
     from fourfold.pipeline import draft as flow
 
-    text = flow.draft(data, table)
+    text = flow.draft(data, table, output)
     if output is None:
         click.echo(text, nl=False)
     else:
         flow.save(text, output)
-        click.echo(f"Wrote {output}. Answer the lines marked '# answer:', then run: fourfold check {output}")
+        outside = " --allow-outside" if flow.leads_outside(data, output) else ""
+        click.echo(
+            f"Wrote {output}. Answer the lines marked '# answer:', then run: fourfold check{outside} {output}"
+        )
 
 
 @commands.command()
@@ -145,7 +172,7 @@ def keys(key: str | None, schema: bool) -> None:
         click.echo(description_keys.explain(key))
 
 
-@commands.command()
+@commands.command(short_help="Print the completion script of a shell.")
 @click.argument("shell", type=click.Choice(["bash", "zsh", "fish"]))
 def completion(shell: str) -> None:
     """Print the script that completes commands and file names in your shell."""
@@ -158,7 +185,15 @@ def completion(shell: str) -> None:
 
 def main() -> None:
     """Entry point of the ``fourfold`` command."""
-    commands()
+    try:
+        commands()
+    except Exception as fault:
+        # The outermost place: whatever arrives here is a fault of the program, and even then
+        # nobody is shown a traceback that they did not ask for.
+        if os.environ.get("FOURFOLD_TRACEBACK") == "1":
+            raise
+        _confess(fault)
+        sys.exit(INTERNAL_ERROR)
 
 
 if __name__ == "__main__":

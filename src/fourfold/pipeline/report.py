@@ -59,8 +59,7 @@ def render_again(saved: Path, into: Path | None, progress: Progress) -> Done:
 
 
 def _write(results: tree.Results, formats: Sequence[str], folder: Path, progress: Progress) -> Done:
-    with stage(progress, "drawing the report"):
-        rendered = build.render(results, formats, progress)
+    rendered = build.render(results, formats, progress)
     files = {"results.json": json_file.dumps(results).encode("utf-8"), **rendered.files}
     with stage(progress, "writing"):
         write_whole(folder, files)
