@@ -26,7 +26,7 @@ from fourfold.report.disclosure.places import (
     joint,
     roc,
 )
-from fourfold.report.disclosure.places.keys import ANALYSED, EVENT, NONE, Names, everyone
+from fourfold.report.disclosure.places.keys import ALL, ANALYSED, EVENT, NONE, Names, everyone
 from fourfold.results import tree
 
 TINY_FILE = 10
@@ -52,7 +52,8 @@ def hide(results: tree.Results) -> tree.Results:
         results = _without_people(results)
     if not limit.active:
         return results
-    names = Names.of(results)
+    truth, names = results, Names.of(results)
+    results = _joined(results, limit)
     ledger = ledger_of(results, limit)
     secondary.choose(ledger)
     hidden = {path: _reason(ledger, path) for path in ledger.at if ledger.is_hidden(ledger.at[path])}
@@ -67,7 +68,7 @@ def hide(results: tree.Results) -> tree.Results:
     }
     hiding = rewrite.hide_at(rewrite.round_at(results, rounded), hidden)
     hiding = _with_notes(hiding, hidden)
-    hiding = _joined(hiding, ledger)
+    hiding = _without_shares(_with_thin_curve(hiding, truth, ledger), ledger)
     hiding = replace(hiding, findings=[])
     hiding = replace(hiding, findings=findings.hide(results.findings, ledger, _doubles(hiding)))
     return _without_hash(hiding, ledger)
@@ -107,32 +108,46 @@ def _with_notes(results: tree.Results, hidden: dict[Path, str]) -> tree.Results:
     return replace(results, estimates=tree.Estimates(crude=noted("crude"), adjusted=noted("adjusted")))
 
 
-def _joined(results: tree.Results, ledger: Ledger) -> tree.Results:
-    """Groups, bins and the ROC curve, joined or thinned until each step may be told."""
-    limit, confidence = ledger.limit, results.analysis.confidence
-    totals = [everyone(ANALYSED, outcome) for outcome in (EVENT, NONE)]
-    known = not any(ledger.is_hidden(key) for key in (everyone(ANALYSED), *totals))
-    calibration, discrimination = results.calibration, results.discrimination
-    whole = known and ("auc" not in discrimination.hidden if discrimination is not None else True)
-    if calibration is not None:
-        calibration = (
-            groups.calibration(calibration, limit, confidence)
-            if whole
-            else _emptied(calibration, "groups", "curve")
-        )
-    if discrimination is not None:
-        events, non_events = (ledger.counts[key].value if whole else None for key in totals)
-        discrimination = roc.thin(discrimination, events, non_events, limit)
-    by_quantity = [
-        groups.outcome_by_quantity(one, limit, confidence) if known else _emptied(one, "bins", "curve")
-        for one in results.outcome_by_quantity
-    ]
+def _joined(results: tree.Results, limit: Limit) -> tree.Results:
+    """Groups and bins with few people joined with their neighbours."""
+    confidence, calibration = results.analysis.confidence, results.calibration
     return replace(
         results,
-        calibration=calibration,
-        discrimination=discrimination,
-        outcome_by_quantity=by_quantity,
+        calibration=None if calibration is None else groups.calibration(calibration, limit, confidence),
+        outcome_by_quantity=[
+            groups.outcome_by_quantity(one, limit, confidence) for one in results.outcome_by_quantity
+        ],
     )
+
+
+def _with_thin_curve(results: tree.Results, truth: tree.Results, ledger: Ledger) -> tree.Results:
+    """The ROC curve without steps that tell a small count, or the sum of hidden bins of risk."""
+    found = results.discrimination
+    if found is None:
+        return results
+    known = _totals_known(ledger) and "auc" not in found.hidden
+    events, non_events = (
+        ledger.counts[everyone(ANALYSED, outcome)].value if known else None for outcome in (EVENT, NONE)
+    )
+    avoid = fitted_risks.edges(truth) if any(one.hidden for one in results.risk_distribution) else set()
+    return replace(results, discrimination=roc.thin(found, events, non_events, avoid, ledger.limit))
+
+
+def _without_shares(results: tree.Results, ledger: Ledger) -> tree.Results:
+    """Where the people analysed or their events are hidden, nothing that adds up to them stays."""
+    calibration = results.calibration
+    revealing = results.discrimination is not None and "auc" in results.discrimination.hidden
+    known = _totals_known(ledger)
+    if calibration is not None and (revealing or not known):
+        calibration = _emptied(calibration, "groups", "curve")
+    by_quantity = results.outcome_by_quantity
+    if not known:
+        by_quantity = [_emptied(one, "bins", "curve") for one in by_quantity]
+    return replace(results, calibration=calibration, outcome_by_quantity=by_quantity)
+
+
+def _totals_known(ledger: Ledger) -> bool:
+    return not any(ledger.is_hidden(everyone(ANALYSED, outcome)) for outcome in (ALL, EVENT, NONE))
 
 
 def _emptied(value: Any, *names: str) -> Any:

@@ -10,11 +10,20 @@ from fourfold.results import tree
 
 
 def thin(
-    found: tree.Discrimination, events: int | None, non_events: int | None, limit: Limit
+    found: tree.Discrimination,
+    events: int | None,
+    non_events: int | None,
+    avoid: set[tuple[int, int]],
+    limit: Limit,
 ) -> tree.Discrimination:
     """Leave points out until no step of the curve tells a small count; none is moved.
 
-    Where the totals are hidden, every step is a fraction that could give them away: no curve.
+    Parameters
+    ----------
+    events, non_events : int or None
+        Totals. Where they are hidden every step is a fraction that could give them away: no curve.
+    avoid : set of (events, non-events)
+        People above scores at which a point must not stand, since other counts are hidden there.
     """
     if events is None or non_events is None:
         return replace(found, curve=[], hidden={**found.hidden, "curve": "derived"}) if found.curve else found
@@ -28,10 +37,13 @@ def thin(
         )
         return all(limit.open(step) for step in steps)
 
+    def above(point: tree.RocPoint) -> tuple[int, int]:
+        return round(point.sensitivity * events), round((1 - point.specificity) * non_events)
+
     *points, last = found.curve
     kept = points[:1]
     for point in points[1:]:
-        if told(kept[-1], point):
+        if told(kept[-1], point) and above(point) not in avoid:
             kept.append(point)
     while len(kept) > 1 and not told(kept[-1], last):
         kept.pop()
