@@ -19,8 +19,9 @@ from tests.report.page_reading import Reading, read
 
 from fourfold.errors import RenderingError
 from fourfold.report import build, html, page
+from fourfold.report.tables.participants import characteristics
 from fourfold.report.writer import Writer
-from fourfold.results import tree
+from fourfold.results import json_file, tree
 
 SAMPLES = ("cohort", "prediction", "case_control", "cross_sectional", "separated", "hidden", "shaped")
 
@@ -304,6 +305,29 @@ def test_same_results_give_the_same_bytes_in_another_process(tmp_path):
         )  # fmt: skip
         digests.add(run.stdout.strip())
     assert len(digests) == 1
+
+
+@pytest.mark.parametrize("name", ["shaped", "hidden", "separated"])
+def test_saved_results_render_to_the_same_bytes(name):
+    saved = json_file.dumps(getattr(sample, name)())
+    assert build.render(json_file.loads(saved), ["html"]).files["report.html"] == rendered(name)
+
+
+def test_hidden_group_sizes_are_explained_too():
+    results = sample.cohort()
+    found = results.descriptives.by_outcome
+    assert found is not None
+    veiled = replace(found, group_sizes=[None, 130], hidden={"group_sizes": "small"})
+    table = characteristics(Writer.of(results), veiled, "x")
+    assert table.headings[1].text == "Overall (n\u00a0=\u00a0hidden)"
+    assert table.headings[2].text == "With the event (n\u00a0=\u00a0fewer than 5)"
+    assert "stand for numbers that are withheld" in table.notes[-1]
+
+
+def test_a_language_that_is_not_there_is_refused():
+    results = sample.cohort()
+    with pytest.raises(RenderingError, match="language 'xx'"):
+        build.render(replace(results, analysis=replace(results.analysis, language="xx")), ["html"])
 
 
 def test_unknown_format_is_refused():

@@ -128,8 +128,8 @@ def area(writer: Writer, found: tree.Discrimination, digits: int) -> str:
     )
 
 
-def hidden_note(writer: Writer, rows: list[Row]) -> list[str]:
-    """The line that explains hidden values, if any row has one."""
-    if any(cell.kind == "hidden" for row in rows for cell in row.cells):
+def hidden_note(writer: Writer, rows: list[Row], also: bool = False) -> list[str]:
+    """The line that explains hidden values, if any row (or, by ``also``, a heading) has one."""
+    if also or any(cell.kind == "hidden" for row in rows for cell in row.cells):
         return [writer.say("labels.hidden.note", limit=writer.results.analysis.smallest_count)]
     return []

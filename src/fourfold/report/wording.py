@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from fourfold.report.answer import answer
-from fourfold.report.findings_words import FindingWords, findings_in_words
+from fourfold.report.findings_words import GRADES, FindingWords, findings_in_words
 from fourfold.report.writer import Writer
 from fourfold.results import tree
 
@@ -17,9 +17,7 @@ def finding_texts(results: tree.Results) -> list[tuple[tree.Finding, FindingWord
     """Each finding with its words, serious ones first."""
     writer = Writer.of(results)
     words = findings_in_words(writer)
-    ordered = sorted(
-        writer.results.findings, key=lambda finding: ("serious", "concern", "remark").index(finding.grade)
-    )
+    ordered = sorted(writer.results.findings, key=lambda finding: GRADES.index(finding.grade))
     return list(zip(ordered, words, strict=True))
 
 

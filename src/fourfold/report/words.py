@@ -7,7 +7,7 @@ never itself read as a template. What comes out is plain text: the page escapes 
 from __future__ import annotations
 
 import re
-from collections.abc import Mapping, Sequence
+from collections.abc import Callable, Mapping, Sequence
 from functools import cache
 from typing import Any
 
@@ -15,7 +15,7 @@ from jinja2 import StrictUndefined, Template
 from jinja2.sandbox import ImmutableSandboxedEnvironment
 
 from fourfold.report import assets
-from fourfold.report.numbers import Numbers, filters
+from fourfold.report.numbers import Numbers, Withheld, filters
 
 _SPACES = re.compile(r"[ \t\r\n]+")
 
@@ -119,9 +119,39 @@ def _environment(language: str, numbers: Numbers, labels: Mapping[str, str]) -> 
     )
     environment.filters["listed"] = lambda items, joiner="and": listed(language, list(items), joiner)
     environment.filters["inline"] = lambda label: in_sentence(language, label)
+    environment.filters["counted"] = _counting(language, numbers)
+    environment.filters["compared"] = _comparing(language, environment)
     environment.filters["capital"] = capital
     environment.globals["cite"] = cite
     return environment
+
+
+def _counting(language: str, numbers: Numbers) -> Callable[[Any, str, str], str]:
+    """``1 row``, ``14 rows``, ``fewer than 5 rows``, ``a hidden number of rows``."""
+
+    def counted(n: Any, one: str, many: str) -> str:
+        if isinstance(n, int | float):
+            return f"{numbers.count(n)} {one if n == 1 else many}"
+        if isinstance(n, Withheld) and n.reason == "small":
+            return f"{numbers.count(n)} {many}"
+        hidden = assets.language_file(language, "labels")["hidden"]["number_of"]
+        return str(hidden).format(things=many)
+
+    return counted
+
+
+def _comparing(language: str, environment: ImmutableSandboxedEnvironment) -> Callable[[Any], str]:
+    """The comparison that an odds ratio makes: its variable with level or pair of values."""
+    compiled: list[Template] = []
+
+    def compared(item: Mapping[str, Any]) -> str:
+        if not compiled:
+            joining = assets.language_file(language, "labels")["joining"]
+            compiled.append(environment.from_string(joining["compared"]))
+        fields = {name: item.get(name) for name in ("variable", "level", "contrast")}
+        return _single_spaced(compiled[0].render(**fields))
+
+    return compared
 
 
 CITE_OPEN, CITE_CLOSE = "\ue000", "\ue001"

@@ -50,7 +50,10 @@ def characteristics(writer: Writer, found: tree.DescriptiveTable, id: str) -> Ta
         ),
         headings=headings,
         rows=rows,
-        notes=[writer.say("labels.notes.characteristics"), *cells.hidden_note(writer, rows)],
+        notes=[
+            writer.say("labels.notes.characteristics"),
+            *cells.hidden_note(writer, rows, also=None in found.group_sizes),
+        ],
         wide=groups > 3,
     )
 
