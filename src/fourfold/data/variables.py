@@ -84,6 +84,7 @@ def _variable(
         reason=entry.reason if entry else None,
         planned=entry.planned if entry else None,
         plausible=list(described.plausible) if described.plausible else None,
+        expected=described.expected,
     )
 
 

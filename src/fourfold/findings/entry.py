@@ -1,46 +1,70 @@
-"""What a catalogued finding is."""
+"""What a catalogued finding is made of: a rule that looks, and what is known of its values."""
 
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, field
+from typing import Any
 
 from fourfold.results import tree
 
-GRADES = ("serious", "concern", "remark")
+REMARK, CONCERN, SERIOUS = "remark", "concern", "serious"
+GRADES = (SERIOUS, CONCERN, REMARK)
+SECTIONS = ("participants", "results", "trust", "methods")
+
+
+@dataclass(frozen=True, slots=True)
+class Noticed:
+    """What a rule saw: how grave it is, the numbers that its words need, the variables concerned."""
+
+    grade: str
+    values: dict[str, Any] = field(default_factory=dict)
+    about: list[str] = field(default_factory=list)
+
+
+Rule = Callable[[tree.Results], Noticed | None]
+"""Looks at a results tree; None is silence."""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Entry:
-    """One thing the program can notice.
+    """One finding that the program can make.
 
     Attributes
     ----------
     id : str
-        Family and word, like ``SEP-infinite``.
+        Family and name, such as ``SIZ-epp``; the key of its words.
     section : str
-        Where it is shown: participants, results, trust or methods.
+        Section of the report that it belongs to.
     source : str
-        Published source, or ``common practice``.
-    notice : callable
-        Results to findings; never raises on empty, withheld or hidden parts of the tree.
+        Publication behind it, or ``common practice``.
+    rule : callable
     counts : tuple of str
-        Paths in ``values`` that are counts of people and fall under the smallest-count rule:
-        ``rows``, or ``items[].count`` for each mapping in a list.
+        Where counts of people stand in the values: ``rows``, or ``found[].count`` for the count of
+        every item of a list. They are hidden when small.
     derived : tuple of str
-        Paths computed from such counts.
+        Where figures stand that a count could be worked out from.
     """
 
     id: str
     section: str
     source: str
-    notice: Callable[[tree.Results], list[tree.Finding]]
+    rule: Rule
     counts: tuple[str, ...] = ()
     derived: tuple[str, ...] = ()
 
-
-def found(entry: Entry, grade: str, about: list[str] | None = None, **values: object) -> tree.Finding:
-    """Make a finding of a catalogued kind."""
-    return tree.Finding(
-        id=entry.id, grade=grade, section=entry.section, values=dict(values), source=entry.source, about=about or []
-    )
+    def notice(self, results: tree.Results) -> list[tree.Finding]:
+        """The finding, alone in a list, or an empty list."""
+        noticed = self.rule(results)
+        if noticed is None:
+            return []
+        return [
+            tree.Finding(
+                id=self.id,
+                grade=noticed.grade,
+                section=self.section,
+                values=noticed.values,
+                source=self.source,
+                about=noticed.about,
+            )
+        ]

@@ -1,131 +1,174 @@
-"""Calibration, discrimination and validation."""
+"""How well the model does, and how little the fitting data can say of that."""
 
 from __future__ import annotations
 
-from fourfold.findings.entry import Entry, found
+from fourfold.findings import asked
+from fourfold.findings.entry import CONCERN, REMARK, SERIOUS, Entry, Noticed
 from fourfold.results import tree
 
-CASE_CONTROL = "case-control"
+VAN_CALSTER = "Van Calster et al. 2016, J Clin Epidemiol 74:167-76"
+TRIPOD = "TRIPOD+AI (Collins et al. 2024, BMJ 385:e078378)"
+FITTING_DATA = "fitting data"
+THIN = 5.0
+CHANCE = 0.05
 
 
-def _predicts(results: tree.Results) -> bool:
-    return results.study.purpose == "prediction"
+def calibration_none(results: tree.Results) -> Noticed | None:
+    if not asked.prediction(results) or not asked.fitted(results):
+        return None
+    found = results.calibration
+    if found is not None and found.withheld is None:
+        return None
+    return Noticed(SERIOUS, {"by_design": found is not None})
 
 
-def _by_construction(results: tree.Results) -> list[tree.Finding]:
-    look = results.calibration
-    if look is None or look.basis != "fitting data" or look.withheld is not None:
-        return []
-    return [found(BY_CONSTRUCTION, "remark")]
+def by_construction(results: tree.Results) -> Noticed | None:
+    found = results.calibration
+    if found is None or found.basis != FITTING_DATA or found.withheld is not None:
+        return None
+    if found.slope is not None or found.in_the_large is not None:
+        values = {"offered": True, "slope": found.slope, "in_the_large": found.in_the_large}
+        return Noticed(SERIOUS, values)
+    if not asked.prediction(results):
+        return None
+    return Noticed(REMARK, {"offered": False, "slope": None, "in_the_large": None})
 
 
-def _no_calibration(results: tree.Results) -> list[tree.Finding]:
-    look = results.calibration
-    if not _predicts(results) or results.model.n is None or (look is not None and look.withheld is None):
-        return []
-    return [found(NO_CALIBRATION, "serious")]
-
-
-def _large(results: tree.Results) -> list[tree.Finding]:
-    test = None if results.calibration is None else results.calibration.hosmer_lemeshow
+def hl_large(results: tree.Results) -> Noticed | None:
+    test = _test(results)
     if test is None or test.verdict != "large n":
-        return []
-    return [found(LARGE, "concern", analysed=results.participants.analysed)]
+        return None
+    grade = CONCERN if asked.prediction(results) else REMARK
+    return Noticed(grade, {"n": results.participants.analysed})
 
 
-def _thin(results: tree.Results) -> list[tree.Finding]:
-    test = None if results.calibration is None else results.calibration.hosmer_lemeshow
-    if test is None or test.verdict not in ("few groups", "thin groups"):
-        return []
-    return [found(THIN, "concern", groups=test.groups, why=test.verdict)]
+def hl_thin(results: tree.Results) -> Noticed | None:
+    test = _test(results)
+    if test is None or results.calibration is None:
+        return None
+    expected = [
+        min(group.expected, group.n - group.expected)
+        for group in results.calibration.groups
+        if group.n is not None and group.expected is not None
+    ]
+    smallest = min(expected, default=None)
+    no_verdict = test.verdict in ("thin groups", "few groups")
+    if not no_verdict and (smallest is None or smallest >= THIN):
+        return None
+    grade = CONCERN if no_verdict and asked.prediction(results) else REMARK
+    values = {"groups": test.groups, "smallest": smallest, "verdict": test.verdict}
+    return Noticed(grade, values)
 
 
-def _poor(results: tree.Results) -> list[tree.Finding]:
-    test = None if results.calibration is None else results.calibration.hosmer_lemeshow
-    if test is None or test.verdict is not None or test.p_value is None or test.p_value >= 0.05:
-        return []
-    return [found(POOR, "concern", statistic=test.statistic, df=test.df, p=test.p_value)]
+def hl_departs(results: tree.Results) -> Noticed | None:
+    test = _test(results)
+    if test is None or test.verdict is not None or test.p_value is None or test.p_value >= CHANCE:
+        return None
+    return Noticed(CONCERN, {"p_value": test.p_value, "groups": test.groups})
 
 
-def _apparent(results: tree.Results) -> list[tree.Finding]:
-    look = results.discrimination
-    if not _predicts(results) or look is None or look.auc is None:
-        return []
-    return [found(APPARENT, "serious", auc=look.auc)]
+def _test(results: tree.Results) -> tree.HosmerLemeshow | None:
+    return None if results.calibration is None else results.calibration.hosmer_lemeshow
 
 
-def _no_interval(results: tree.Results) -> list[tree.Finding]:
-    look = results.discrimination
-    if look is None or look.auc is None or look.hidden:
-        return []
-    if look.lower is not None and look.upper is not None:
-        return []
-    return [found(NO_INTERVAL, "concern", auc=look.auc)]
+def auc_apparent(results: tree.Results) -> Noticed | None:
+    found = results.discrimination
+    # For association the area is a by-product; for prediction it is what the model is judged by.
+    if not asked.prediction(results) or found is None or found.auc is None:
+        return None
+    if results.calibration is not None and results.calibration.basis != FITTING_DATA:
+        return None
+    return Noticed(SERIOUS, {"auc": found.auc})
 
 
-def _few_events(results: tree.Results) -> list[tree.Finding]:
-    people = results.participants
-    if not _predicts(results) or people.events is None or people.non_events is None:
-        return []
-    if min(people.events, people.non_events) >= 100:
-        return []
-    return [found(FEW_EVENTS, "serious", events=people.events, non_events=people.non_events)]
+def auc_no_interval(results: tree.Results) -> Noticed | None:
+    found = results.discrimination
+    if not asked.prediction(results) or found is None or found.auc is None:
+        return None
+    if found.lower is not None or found.upper is not None:
+        return None
+    return Noticed(CONCERN, {"auc": found.auc})
 
 
-def _not_validated(results: tree.Results) -> list[tree.Finding]:
-    look = results.calibration
-    if not _predicts(results) or (look is not None and look.basis != "fitting data"):
-        return []
-    return [found(NOT_VALIDATED, "concern")]
+def validation_none(results: tree.Results) -> Noticed | None:
+    if not asked.prediction(results) or not asked.fitted(results):
+        return None
+    if results.calibration is not None and results.calibration.basis != FITTING_DATA:
+        return None
+    return Noticed(CONCERN)
 
 
-def _equation(results: tree.Results) -> list[tree.Finding]:
-    if not _predicts(results) or results.model.withheld is None:
-        return []
-    return [found(EQUATION, "serious")]
+def equation_missing(results: tree.Results) -> Noticed | None:
+    if not asked.prediction(results) or not asked.fitted(results):
+        return None
+    model = results.model
+    no_intercept = "(intercept)" not in model.terms
+    pairs = zip(model.terms, model.coefficients, strict=False)
+    unknown = list(dict.fromkeys(term for term, value in pairs if value is None and term != "(intercept)"))
+    if not no_intercept and all(value is not None for value in model.coefficients):
+        return None
+    values = {"intercept": not no_intercept, "names": unknown, "by_design": model.withheld is not None}
+    return Noticed(SERIOUS, values, unknown)
 
 
-BY_CONSTRUCTION = Entry(
-    id="CAL-by-construction", section="trust", notice=_by_construction,
-    source="Van Calster et al. (2016), J Clin Epidemiol 74, 167-176",
-)  # fmt: skip
-NO_CALIBRATION = Entry(
-    id="CAL-none", section="trust", notice=_no_calibration,
-    source="Van Calster et al. (2019), BMC Med 17, 230; TRIPOD+AI (2024), BMJ 385, e078378",
-)  # fmt: skip
-LARGE = Entry(
-    id="CAL-hl-large", section="trust", notice=_large, counts=("analysed",),
-    source="Paul, Pennell & Lemeshow (2013), Stat Med 32, 67-80",
-)  # fmt: skip
-THIN = Entry(
-    id="CAL-hl-thin", section="trust", notice=_thin,
-    source="Hosmer & Lemeshow (1980), Commun Stat A9, 1043-1069",
-)  # fmt: skip
-POOR = Entry(
-    id="CAL-hl-poor", section="trust", notice=_poor,
-    source="Hosmer & Lemeshow (1980), Commun Stat A9, 1043-1069",
-)  # fmt: skip
-APPARENT = Entry(
-    id="AUC-apparent", section="trust", notice=_apparent,
-    source="Harrell, Lee & Mark (1996), Stat Med 15, 361-387",
-)  # fmt: skip
-NO_INTERVAL = Entry(
-    id="AUC-no-interval", section="trust", notice=_no_interval,
-    source="DeLong, DeLong & Clarke-Pearson (1988), Biometrics 44, 837-845",
-)  # fmt: skip
-FEW_EVENTS = Entry(
-    id="VAL-few-events", section="trust", notice=_few_events, counts=("events", "non_events"),
-    source="Collins, Ogundimu & Altman (2016), Stat Med 35, 214-226",
-)  # fmt: skip
-NOT_VALIDATED = Entry(
-    id="VAL-none", section="trust", notice=_not_validated,
-    source="TRIPOD+AI (2024), BMJ 385, e078378, item 12",
-)  # fmt: skip
-EQUATION = Entry(
-    id="EQN-withheld", section="trust", notice=_equation,
-    source="TRIPOD+AI (2024), BMJ 385, e078378, item 22",
-)  # fmt: skip
+def groups_unexamined(results: tree.Results) -> Noticed | None:
+    if not asked.prediction(results) or not asked.fitted(results):
+        return None
+    # Items 14 and 23a of the checklist are the authors' place to say what they did.
+    if {"14", "23a"} & set(results.study.stated):
+        return None
+    return Noticed(CONCERN)
+
 
 ENTRIES = (
-    BY_CONSTRUCTION, NO_CALIBRATION, LARGE, THIN, POOR, APPARENT, NO_INTERVAL, FEW_EVENTS, NOT_VALIDATED, EQUATION,
-)  # fmt: skip
+    Entry(id="CAL-none", section="trust", source=f"{TRIPOD}; {VAN_CALSTER}", rule=calibration_none),
+    Entry(id="CAL-by-construction", section="trust", source=VAN_CALSTER, rule=by_construction),
+    Entry(
+        id="CAL-hl-large",
+        section="trust",
+        source="Paul, Pennell & Lemeshow 2013, Stat Med 32:67-80",
+        rule=hl_large,
+        counts=("n",),
+    ),
+    Entry(
+        id="CAL-hl-thin",
+        section="trust",
+        source="Hosmer & Lemeshow 1980, Commun Stat A9:1043-69",
+        rule=hl_thin,
+        derived=("smallest",),
+    ),
+    Entry(
+        id="CAL-hl-departs",
+        section="trust",
+        source="Hosmer & Lemeshow 1980, Commun Stat A9:1043-69",
+        rule=hl_departs,
+    ),
+    Entry(
+        id="AUC-apparent",
+        section="trust",
+        source="Harrell, Lee & Mark 1996, Stat Med 15:361-87; PROBAST (Wolff et al. 2019, "
+        "Ann Intern Med 170:51-58)",
+        rule=auc_apparent,
+        derived=("auc",),
+    ),
+    Entry(
+        id="AUC-no-interval",
+        section="trust",
+        source=f"{TRIPOD}, item 23a",
+        rule=auc_no_interval,
+        derived=("auc",),
+    ),
+    Entry(
+        id="VAL-none",
+        section="trust",
+        source="Steyerberg et al. 2001, J Clin Epidemiol 54:774-81",
+        rule=validation_none,
+    ),
+    Entry(id="EQN-missing", section="trust", source=f"{TRIPOD}, item 22", rule=equation_missing),
+    Entry(
+        id="FAIR-groups",
+        section="trust",
+        source=f"{TRIPOD}, items 14 and 23a",
+        rule=groups_unexamined,
+    ),
+)

@@ -1,69 +1,99 @@
-"""The shape of quantities, and terms that carry the same information."""
+"""Is a straight line enough, and does a curve stay within the data?"""
 
 from __future__ import annotations
 
-import math
+from typing import Any
 
-from fourfold.findings.entry import Entry, found
+from fourfold.findings import asked
+from fourfold.findings.entry import CONCERN, REMARK, Entry, Noticed
 from fourfold.results import tree
 
-IN_MODEL = ("exposure", "predictor", "covariate")
+STRAIGHT = ("linear", "log2")
+CHANCE = 0.05
 
 
-def _not_straight(results: tree.Results) -> list[tree.Finding]:
-    tests = [
-        test
-        for test in results.term_tests
-        if test.part == "non-linearity" and test.p_value is not None and test.p_value < 0.05
+def _tests(results: tree.Results) -> list[tree.TermTest]:
+    return [one for one in results.term_tests if one.part == "non-linearity" and one.model == "adjusted"]
+
+
+def not_straight(results: tree.Results) -> Noticed | None:
+    found = [
+        {
+            "variable": one.term,
+            "p_value": one.p_value,
+            "straight": asked.shape(results, one.term) in STRAIGHT,
+        }
+        for one in _tests(results)
+        if one.p_value is not None and one.p_value < CHANCE
     ]
-    if not tests:
-        return []
-    about = [test.term for test in tests]
-    return [found(NOT_STRAIGHT, "concern", about, items=[{"variable": t.term, "p": t.p_value} for t in tests])]
+    if not found:
+        return None
+    # Where the model has the curve already, the reader need only be sent to it.
+    grade = CONCERN if any(one["straight"] for one in found) else REMARK
+    return Noticed(grade, {"found": found}, asked.names(found))
 
 
-def _unassessed(results: tree.Results) -> list[tree.Finding]:
-    straight = [
+def unassessed(results: tree.Results) -> Noticed | None:
+    if not asked.fitted(results):
+        return None
+    tested = {one.term for one in _tests(results)}
+    bare = [
         variable.name
-        for variable in results.variables
-        if variable.kind == "quantity" and variable.role in IN_MODEL and variable.shape in ("linear", "log2")
+        for variable in asked.modelled(results)
+        if variable.kind == "quantity" and variable.shape in STRAIGHT and variable.name not in tested
     ]
-    return [found(UNASSESSED, "remark", straight, names=straight)] if straight else []
+    return Noticed(REMARK, {"names": bare}, bare) if bare else None
 
 
-def _inflation(results: tree.Results) -> list[tree.Finding]:
-    if results.collinearity is None:
-        return []
-    items = [
-        {"variable": item.term, "scaled": item.scaled}
-        for item in results.collinearity.gvif
-        if item.scaled > math.sqrt(5)
-    ]
-    return [found(INFLATION, "concern", [str(i["variable"]) for i in items], items=items)] if items else []
+def beyond_range(results: tree.Results) -> Noticed | None:
+    found: list[dict[str, Any]] = []
+    for name, values in _asked_values(results).items():
+        span = _span(results, name)
+        if span is None:
+            continue
+        outside = [value for value in values if not span[0] <= value <= span[1]]
+        if outside:
+            found.append({"variable": name, "outside": outside, "lowest": span[0], "highest": span[1]})
+    return Noticed(CONCERN, {"found": found}, asked.names(found)) if found else None
 
 
-def _condition(results: tree.Results) -> list[tree.Finding]:
-    look = results.collinearity
-    if look is None or look.condition_index is None or look.condition_index <= 30 or not look.shared_terms:
-        return []
-    return [found(CONDITION, "concern", list(look.shared_terms), index=look.condition_index, names=list(look.shared_terms))]
+def _asked_values(results: tree.Results) -> dict[str, list[float]]:
+    """Values at which a curve is read: the ends of each contrast, and the reference."""
+    values: dict[str, list[float]] = {}
+    for estimate in results.estimates.adjusted:
+        if estimate.contrast is not None:
+            values.setdefault(estimate.term, []).extend(estimate.contrast)
+    for curve in results.curves:
+        values.setdefault(curve.term, []).append(curve.reference)
+    return {name: sorted(set(found)) for name, found in values.items()}
 
 
-NOT_STRAIGHT = Entry(
-    id="LIN-not-straight", section="results", notice=_not_straight,
-    source="Harrell (2015), Regression Modeling Strategies, 2nd ed.",
-)  # fmt: skip
-UNASSESSED = Entry(
-    id="LIN-unassessed", section="results", notice=_unassessed,
-    source="Royston, Altman & Sauerbrei (2006), Stat Med 25, 127-141",
-)  # fmt: skip
-INFLATION = Entry(
-    id="COL-gvif", section="trust", notice=_inflation,
-    source="Fox & Monette (1992), J Am Stat Assoc 87, 178-183",
-)  # fmt: skip
-CONDITION = Entry(
-    id="COL-condition", section="trust", notice=_condition,
-    source="Belsley, Kuh & Welsch (1980), Regression Diagnostics",
-)  # fmt: skip
+def _span(results: tree.Results, name: str) -> tuple[float, float] | None:
+    for one in results.outcome_by_quantity:
+        if one.term == name and one.bins:
+            return min(part.lower for part in one.bins), max(part.upper for part in one.bins)
+    return None
 
-ENTRIES = (NOT_STRAIGHT, UNASSESSED, INFLATION, CONDITION)
+
+ENTRIES = (
+    Entry(
+        id="LIN-not-straight",
+        section="results",
+        source="Harrell 2015, Regression Modeling Strategies, 2nd edition, chapter 2; "
+        "Royston, Altman & Sauerbrei 2006, Stat Med 25:127-41",
+        rule=not_straight,
+    ),
+    Entry(
+        id="LIN-unassessed",
+        section="methods",
+        source="Harrell 2015, Regression Modeling Strategies, 2nd edition, chapter 2",
+        rule=unassessed,
+    ),
+    Entry(
+        id="EXT-range",
+        section="results",
+        source="common practice",
+        rule=beyond_range,
+        derived=("found[].lowest", "found[].highest"),
+    ),
+)

@@ -1,82 +1,114 @@
-"""Was the study large enough for the model."""
+"""Is there enough to carry the model?"""
 
 from __future__ import annotations
 
-from fourfold.findings.entry import Entry, found
+from fourfold.findings import asked
+from fourfold.findings.entry import CONCERN, REMARK, SERIOUS, Entry, Noticed
 from fourfold.results import tree
 
+FEW_PER_PARAMETER, VERY_FEW_PER_PARAMETER = 10.0, 5.0
+SHRINKAGE_WANTED, SHRINKAGE_NEEDED = 0.9, 0.8
+ENOUGH_FOR_A_CURVE = 200
+ENOUGH_FOR_VALIDATION = 100
+CHANCE = 0.05
 
-def _events_per_parameter(results: tree.Results) -> list[tree.Finding]:
+
+def events_per_parameter(results: tree.Results) -> Noticed | None:
     size = results.sample_size
-    if size is None or size.events_per_parameter is None or size.events_per_parameter >= 10:
-        return []
-    grade = "serious" if size.events_per_parameter < 5 else "concern"
-    return [
-        found(
-            EVENTS_PER_PARAMETER,
-            grade,
-            per_parameter=size.events_per_parameter,
-            parameters=size.candidate_parameters,
-        )
-    ]
+    if size is None or size.events_per_parameter is None or size.candidate_parameters == 0:
+        return None
+    ratio = size.events_per_parameter
+    if ratio >= FEW_PER_PARAMETER:
+        return None
+    values = {"ratio": ratio, "fewer": asked.rarer(results), "parameters": size.candidate_parameters}
+    return Noticed(SERIOUS if ratio < VERY_FEW_PER_PARAMETER else CONCERN, values)
 
 
-def _criteria(results: tree.Results) -> list[tree.Finding]:
+def riley(results: tree.Results) -> Noticed | None:
     size = results.sample_size
-    if results.study.purpose != "prediction" or size is None or not size.shortfall:
-        return []
-    return [
-        found(
-            CRITERIA,
-            "serious",
-            required=size.required,
-            shortfall=size.shortfall,
-            analysed=results.participants.analysed,
-            criteria=[
-                {"id": item.id, "required": item.required} for item in size.criteria if item.shortfall
-            ],
-        )
+    # The criteria are made for prediction models; an estimate is judged by its interval.
+    if size is None or not asked.prediction(results) or not size.shortfall or size.required is None:
+        return None
+    n = results.participants.analysed
+    criteria = [
+        {"id": one.id, "required": one.required, "short": bool(one.shortfall)} for one in size.criteria
     ]
+    values = {
+        "n": n,
+        "required": size.required,
+        "shortfall": size.shortfall,
+        "criteria": criteria,
+        "assumed": size.r_squared_assumed,
+    }
+    return Noticed(SERIOUS if 2 * size.shortfall > size.required else CONCERN, values)
 
 
-def _shrinkage(results: tree.Results) -> list[tree.Finding]:
+def shrinkage(results: tree.Results) -> Noticed | None:
     size = results.sample_size
-    if size is None or size.shrinkage is None or size.shrinkage >= 0.9:
-        return []
-    if results.study.purpose != "prediction":
-        grade = "remark" if size.shrinkage >= 0.8 else "concern"
-    else:
-        grade = "serious" if size.shrinkage < 0.8 else "concern"
-    return [found(SHRINKAGE, grade, shrinkage=size.shrinkage, too_extreme=100 * (1 - size.shrinkage))]
+    if size is None or size.shrinkage is None or size.shrinkage >= SHRINKAGE_WANTED:
+        return None
+    factor = size.shrinkage
+    if asked.prediction(results):
+        return Noticed(SERIOUS if factor < SHRINKAGE_NEEDED else CONCERN, {"factor": factor})
+    # A weak association makes the factor small in samples of any size: no fault of the size then.
+    p = results.model.likelihood_ratio_p
+    if factor < SHRINKAGE_NEEDED and p is not None and p < CHANCE:
+        return Noticed(REMARK, {"factor": factor})
+    return None
 
 
-def _expected_cells(results: tree.Results) -> list[tree.Finding]:
-    small = [
-        table
-        for table in results.tables
-        if table.smallest_expected is not None and table.smallest_expected < 5
-    ]
-    if not small:
-        return []
-    about = [table.exposure for table in small]
-    return [found(EXPECTED_CELLS, "concern", about, names=about)]
+def few_for_curve(results: tree.Results) -> Noticed | None:
+    fewer = asked.rarer(results)
+    if not asked.prediction(results) or fewer is None:
+        return None
+    if not ENOUGH_FOR_VALIDATION <= fewer < ENOUGH_FOR_A_CURVE:
+        return None
+    return Noticed(CONCERN, {"fewer": fewer, "wanted": ENOUGH_FOR_A_CURVE})
 
 
-EVENTS_PER_PARAMETER = Entry(
-    id="SIZ-epp", section="trust", notice=_events_per_parameter, derived=("per_parameter",),
-    source="Peduzzi et al. (1996), J Clin Epidemiol 49, 1373-1379; van Smeden et al. (2016), BMC Med Res "
-    "Methodol 16, 163",
-)  # fmt: skip
-CRITERIA = Entry(
-    id="SIZ-riley", section="trust", notice=_criteria,
-    source="Riley et al. (2019), Stat Med 38, 1276-1296; (2020), BMJ 368, m441",
-)  # fmt: skip
-SHRINKAGE = Entry(
-    id="SIZ-shrinkage", section="trust", notice=_shrinkage,
-    source="van Houwelingen & le Cessie (1990), Stat Med 9, 1303-1325",
-)  # fmt: skip
-EXPECTED_CELLS = Entry(
-    id="SIZ-cells", section="results", notice=_expected_cells, source="common practice"
+def few_for_validation(results: tree.Results) -> Noticed | None:
+    fewer = asked.rarer(results)
+    if not asked.prediction(results) or fewer is None or fewer >= ENOUGH_FOR_VALIDATION:
+        return None
+    return Noticed(SERIOUS, {"fewer": fewer, "wanted": ENOUGH_FOR_VALIDATION})
+
+
+ENTRIES = (
+    Entry(
+        id="SIZ-epp",
+        section="trust",
+        source="Peduzzi et al. 1996, J Clin Epidemiol 49:1373-9; "
+        "van Smeden et al. 2016, BMC Med Res Methodol 16:163",
+        rule=events_per_parameter,
+        counts=("fewer",),
+        derived=("ratio",),
+    ),
+    Entry(
+        id="SIZ-riley",
+        section="trust",
+        source="Riley et al. 2019, Stat Med 38:1276-96; Riley et al. 2020, BMJ 368:m441",
+        rule=riley,
+        counts=("n",),
+        derived=("required", "shortfall", "criteria[].required"),
+    ),
+    Entry(
+        id="SIZ-shrinkage",
+        section="trust",
+        source="van Houwelingen & le Cessie 1990, Stat Med 9:1303-25",
+        rule=shrinkage,
+    ),
+    Entry(
+        id="CAL-few-events",
+        section="trust",
+        source="Van Calster et al. 2016, J Clin Epidemiol 74:167-76",
+        rule=few_for_curve,
+        counts=("fewer",),
+    ),
+    Entry(
+        id="VAL-few-events",
+        section="trust",
+        source="Collins, Ogundimu & Altman 2016, Stat Med 35:214-26",
+        rule=few_for_validation,
+        counts=("fewer",),
+    ),
 )
-
-ENTRIES = (EVENTS_PER_PARAMETER, CRITERIA, SHRINKAGE, EXPECTED_CELLS)

@@ -40,8 +40,8 @@ class Variable:
 
     ``role`` is outcome, exposure, covariate, predictor or other. ``kind`` is quantity, category,
     ordered, binary or date. ``reference_rule`` is None when stated, else the rule that chose it
-    (``most frequent``). ``shape`` is linear, quadratic, spline or log2. ``reason`` and
-    ``planned`` come from the description.
+    (``most frequent``). ``shape`` is linear, quadratic, spline or log2. ``reason``,
+    ``planned`` and ``expected`` (``raises`` or ``lowers``) come from the description.
     """
 
     name: str
@@ -62,6 +62,7 @@ class Variable:
     reason: str | None = None
     planned: bool | None = None
     plausible: list[float] | None = None
+    expected: str | None = None
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -88,6 +89,7 @@ class Analysis:
     weights_stated: str | None = None
     matched_on: list[str] = field(default_factory=list)
     follow_up: list[str] = field(default_factory=list)
+    follow_up_variable: str | None = None
     exposure_measured: str | None = None
     language: str = "en"
 
