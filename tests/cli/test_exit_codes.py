@@ -10,9 +10,9 @@ import time
 from pathlib import Path
 
 import pytest
+from tests.cli.conftest import FOURFOLD, SMALL
 
 from fourfold.cli import main as cli
-from tests.cli.conftest import FOURFOLD, SMALL
 
 
 def test_done_is_0_and_the_closing_lines_carry_answer_and_caution(run, study):

@@ -21,6 +21,8 @@ description; 4 error in the data; 5 nothing can be fitted; 6 rendering failed; 7
 (a fault in Fourfold; FOURFOLD_TRACEBACK=1 shows where); 130 interrupted.
 """
 
+COMPLETE_VAR = "_FOURFOLD_COMPLETE"
+
 INTERNAL_ERROR = 70
 """As EX_SOFTWARE of the BSD sysexits."""
 
@@ -101,11 +103,11 @@ def report(
 ) -> None:
     """Read, audit, fit, assess and render: STUDY.yaml becomes report.html, report.pdf and
     results.json."""
+    if (study is None) == (saved is None):
+        raise click.UsageError("Name a study description, or a results file with --from.")
     from fourfold.cli import closing, progress
     from fourfold.pipeline import report as flow
 
-    if (study is None) == (saved is None):
-        raise click.UsageError("Name a study description, or a results file with --from.")
     with progress.shown(quiet) as watched:
         if saved is not None:
             done = flow.render_again(saved, into, watched)
@@ -157,8 +159,16 @@ def draft(data: Path, table: str | None, output: Path | None) -> None:
         )
 
 
+def _known_keys(_: click.Context, __: click.Parameter, begun: str) -> list[str]:
+    """The keys that begin as typed, for completion."""
+    from fourfold.description.outline import outline
+
+    found = outline().values()
+    return sorted({word for key in found for word in (key.name, key.dotted) if word.startswith(begun)})
+
+
 @commands.command()
-@click.argument("key", required=False)
+@click.argument("key", required=False, shell_complete=_known_keys)
 @click.option("--schema", is_flag=True, help="Print the JSON Schema of a description.")
 def keys(key: str | None, schema: bool) -> None:
     """What each key of a description means, with an example."""
@@ -180,13 +190,14 @@ def completion(shell: str) -> None:
 
     found = get_completion_class(shell)
     assert found is not None
-    click.echo(found(commands, {}, "fourfold", "_FOURFOLD_COMPLETE").source())
+    click.echo(found(commands, {}, "fourfold", COMPLETE_VAR).source())
 
 
 def main() -> None:
     """Entry point of the ``fourfold`` command."""
     try:
-        commands()
+        # Named, so that completion and help are the same however the program was started.
+        commands(prog_name="fourfold", complete_var=COMPLETE_VAR)
     except Exception as fault:
         # The outermost place: whatever arrives here is a fault of the program, and even then
         # nobody is shown a traceback that they did not ask for.
