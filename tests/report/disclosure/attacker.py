@@ -59,7 +59,7 @@ def statements(results: tree.Results) -> Iterator[Statement]:
         yield one("flow", flow, "crude_rows", lambda p, v=name: _known(p, v), name)
     for missing in flow.missing:
         yield one(f"missing.{missing.variable}", missing, "count", lambda p, v=missing.variable: p[v] is None)
-    for pattern in flow.patterns:
+    for pattern in flow.patterns if not results.analysis.hide_zero else []:
         yield one(
             f"pattern.{pattern.variables}", pattern, "count",
             lambda p, names=pattern.variables: sorted(k for k, v in p.items() if v is None) == sorted(names),
@@ -83,18 +83,19 @@ def statements(results: tree.Results) -> Iterator[Statement]:
         for cell, exposed, with_event in (
             ("a", "yes", True), ("b", "yes", False), ("c", "no", True), ("d", "no", False),
         ):  # fmt: skip
-            yield one(
-                "table", table, cell,
-                lambda p, t=table, e=exposed, w=with_event: complete(p) and p[t.exposure] == e and event(p) == w,
-            )  # fmt: skip
+
+            def counted(
+                person: Person, t: tree.FourfoldTable = table, e: str = exposed, w: bool = with_event
+            ) -> bool:
+                return complete(person) and person[t.exposure] == e and event(person) == w
+
+            yield one("table", table, cell, counted)
     for kind in ("crude", "adjusted"):
         for estimate in getattr(results.estimates, kind):
             at = f"{kind}.{estimate.term}.{estimate.level}"
 
             def within(person: Person, e: tree.Estimate = estimate) -> bool:
-                return complete(person) and (
-                    e.term.startswith("q") or person[e.term] == (e.level or "yes")
-                )
+                return complete(person) and (e.term.startswith("q") or person[e.term] == (e.level or "yes"))
 
             yield one(at, estimate, "events", lambda p, i=within: i(p) and event(p))
             yield one(at, estimate, "total", within)

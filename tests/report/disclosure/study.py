@@ -6,6 +6,7 @@ tree adds up as a real one does and the truth is known.
 
 from __future__ import annotations
 
+import itertools
 import math
 from dataclasses import dataclass
 from typing import Any
@@ -36,7 +37,9 @@ class Shape:
 def rows_of(shape: Shape, seed: int) -> Rows:
     """Draw people; a missing value is None."""
     rng = np.random.default_rng(seed)
-    columns: dict[str, list[Any]] = {"outcome": list(np.where(rng.random(shape.people) < shape.event, "yes", "no"))}
+    columns: dict[str, list[Any]] = {
+        "outcome": list(np.where(rng.random(shape.people) < shape.event, "yes", "no"))
+    }
     for place, count in enumerate(shape.levels):
         weights = np.arange(1, count + 1, dtype=float) ** -shape.skew
         columns[f"c{place}"] = [
@@ -76,7 +79,12 @@ class _Study:
             if count == 2:
                 found.append(
                     tree.Variable(
-                        name=f"c{place}", label=f"C{place}", role=role, kind="binary", present="yes", reference="no"
+                        name=f"c{place}",
+                        label=f"C{place}",
+                        role=role,
+                        kind="binary",
+                        present="yes",
+                        reference="no",
                     )
                 )
             else:
@@ -88,7 +96,9 @@ class _Study:
                 )  # fmt: skip
         for place in range(self.shape.quantities):
             found.append(
-                tree.Variable(name=f"q{place}", label=f"Q{place}", role="covariate", kind="quantity", per=10.0)
+                tree.Variable(
+                    name=f"q{place}", label=f"Q{place}", role="covariate", kind="quantity", per=10.0
+                )
             )
         return found
 
@@ -157,14 +167,13 @@ class _Study:
             non_events=len(self.complete) - self.events,
             crude_rows={name: sum(row[name] is not None for row in known) for name in self.names[1:]},
             missing=[
-                tree.MissingVariable(
-                    variable=name, label=name, count=count, percent=100 * count / eligible
-                )
+                tree.MissingVariable(variable=name, label=name, count=count, percent=100 * count / eligible)
                 for name in self.names
                 for count in [sum(row[name] is None for row in self.rows)]
             ],
             patterns=[
-                tree.MissingPattern(variables=list(pattern), count=count) for pattern, count in patterns.items()
+                tree.MissingPattern(variables=list(pattern), count=count)
+                for pattern, count in patterns.items()
             ],
             missing_associations=[
                 association(name) for name in self.names[1:] if any(row[name] is None for row in known)
@@ -242,7 +251,9 @@ class _Study:
         for variable in self.variables:
             if variable.name == by:
                 continue
-            levels: list[str | None] = [None] if variable.kind == "quantity" else [*(variable.levels or ["yes"])]
+            levels: list[str | None] = (
+                [None] if variable.kind == "quantity" else [*(variable.levels or ["yes"])]
+            )
             for level in levels:
                 cells = [
                     _cell(name, column, variable, level)
@@ -250,8 +261,8 @@ class _Study:
                 ]
                 rows.append(
                     tree.Descriptive(
-                        variable=variable.name, label=variable.label, kind=variable.kind, level=level, unit=None,
-                        decimals=1, overall=cells[0], groups=cells[1:],
+                        variable=variable.name, label=variable.label, kind=variable.kind, level=level,
+                        unit=None, decimals=1, overall=cells[0], groups=cells[1:],
                     )
                 )  # fmt: skip
         return tree.DescriptiveTable(
@@ -261,11 +272,14 @@ class _Study:
     def _bins(self) -> list[tree.RiskBin]:
         found = []
         edges = np.linspace(20, 80, 7)
-        for low, high in zip(edges[:-1], edges[1:], strict=True):
+        for low, high in itertools.pairwise(edges):
             inside = [row for row in self.complete if low <= min(max(row.get("q0", 50), 20.1), 79.9) < high]
             found.append(
                 tree.RiskBin(
-                    lower=low / 100, upper=high / 100, events=_events(inside), non_events=len(inside) - _events(inside)
+                    lower=low / 100,
+                    upper=high / 100,
+                    events=_events(inside),
+                    non_events=len(inside) - _events(inside),
                 )
             )
         return found

@@ -18,6 +18,8 @@ class Leak:
     Attributes
     ----------
     key : tuple of str
+    small : bool
+        Whether it is a small count, or one hidden to protect such.
     lowest, highest : float
         What it can still be.
     allowed : tuple of float
@@ -25,6 +27,7 @@ class Leak:
     """
 
     key: Key
+    small: bool
     lowest: float
     highest: float
     allowed: tuple[float, float]
@@ -53,20 +56,24 @@ def audit(results: tree.Results, truth: tree.Results | None = None) -> list[Leak
         return []
     ledger = ledger_of(results, limit)
     known = ledger_of(truth, limit) if truth is not None else ledger
+    for key, count in ledger.counts.items():
+        if count.value is None and key in known.counts:
+            # So that sums of small counts are not taken to be beyond the limit.
+            count.value = known.counts[key].value
     as_it_is, everything_open, unmarked = Room(ledger), Room(_opened(ledger)), Room(_unmarked(ledger))
     leaks = []
     for key, count in ledger.counts.items():
-        true = known.counts[key].value if key in known.counts else None
-        if count.hidden == SMALL or (count.guarded and not count.stands and limit.small(true)):
+        small = limit.small(count.value)
+        if count.hidden == SMALL or (count.guarded and not count.stands and small):
             allowed = everything_open.ends(key, limit.least, limit.most)
             found = as_it_is.ends(key, limit.least, limit.most)
-        elif count.hidden == SUBTRACTION and true:
+        elif count.hidden == SUBTRACTION and not small and count.value != 0:
             found = unmarked.ends(key, 0, float("inf"))
             allowed = (found[0], found[0] + limit.smallest)
         else:
             continue
         if found[0] > allowed[0] or found[1] < allowed[1]:
-            leaks.append(Leak(key, *found, allowed))
+            leaks.append(Leak(key, count.hidden != SUBTRACTION, *found, allowed))
     return leaks
 
 
@@ -75,7 +82,7 @@ def _opened(ledger: Ledger) -> Ledger:
     opened = _copy(ledger)
     for count in opened.counts.values():
         if count.shown and count.value:
-            count.hidden, count.value = SUBTRACTION, None
+            count.hidden = SUBTRACTION
     return opened
 
 

@@ -53,7 +53,7 @@ def hide(results: tree.Results) -> tree.Results:
     if not limit.active:
         return results
     truth, names = results, Names.of(results)
-    results = _joined(results, limit)
+    results = _joined(_without_patterns(results, limit), limit)
     ledger = ledger_of(results, limit)
     secondary.choose(ledger)
     hidden = {path: _reason(ledger, path) for path in ledger.at if ledger.is_hidden(ledger.at[path])}
@@ -164,6 +164,13 @@ def _without_people(results: tree.Results) -> tree.Results:
     return replace(
         results, outcome_by_quantity=[replace(one, points=[]) for one in results.outcome_by_quantity]
     )
+
+
+def _without_patterns(results: tree.Results, limit: Limit) -> tree.Results:
+    """Where zeros are hidden, a list of the patterns that occur tells which do not."""
+    if not limit.hide_zero:
+        return results
+    return replace(results, participants=_emptied(results.participants, "patterns"))
 
 
 def _without_hash(results: tree.Results, ledger: Ledger) -> tree.Results:

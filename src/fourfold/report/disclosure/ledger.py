@@ -99,8 +99,8 @@ class Ledger:
         count.stands = True
         count.cost = max(count.cost, cost * _size(value))
         if value is not None:
-            count.value = value
-        else:
+            count.value, count.hidden = value, None
+        elif count.value is None:
             count.hidden = reason
         self.at[path] = key
         return key

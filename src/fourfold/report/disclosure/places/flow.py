@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from itertools import pairwise
+from itertools import combinations, pairwise
 
 from fourfold.report.disclosure.ledger import Item, Key, Ledger, Path
 from fourfold.report.disclosure.places.keys import (
@@ -28,6 +28,10 @@ INCOMPLETE: Key = ("flow", "incomplete")
 
 THE_WHOLE = 1000.0
 """Cost of hiding the people analysed or their events: nothing else in the report can be read then."""
+
+
+MOST_UNLISTED = 5
+"""Variables whose possible patterns of missing values are all entered, if none is listed."""
 
 
 def enter(results: tree.Results, ledger: Ledger, names: Names) -> None:
@@ -156,7 +160,7 @@ def relate_patterns(results: tree.Results, ledger: Ledger, names: Names) -> None
 
     A pattern is split by outcome, and again by each variable that heads a table of its own.
     """
-    patterns = listed_patterns(results, ledger)
+    patterns = patterns_of(results, ledger, names)
     if not patterns:
         return
     outcomes: dict[Key, tuple[str, ...]] = {
@@ -216,16 +220,27 @@ def _split_patterns(
                 )
 
 
-def listed_patterns(results: tree.Results, ledger: Ledger) -> dict[Key, frozenset[str]] | None:
-    """The patterns of missing values, which variables each lacks; None if not all are listed."""
+def patterns_of(results: tree.Results, ledger: Ledger, names: Names) -> dict[Key, frozenset[str]] | None:
+    """The patterns of missing values, which variables each lacks.
+
+    Where they are not all listed, every pattern that there could be, if the variables are few; None
+    if they are many, for then people who lack one variable tell little of another.
+    """
     found = results.participants
     keys = [ledger.at.get((*HERE, "patterns", place, "count")) for place in range(len(found.patterns))]
-    patterns = {
+    listed = {
         key: frozenset(pattern.variables)
         for key, pattern in zip(keys, found.patterns, strict=True)
         if key is not None
     }
-    return patterns if _all_listed(found, ledger, list(patterns)) else None
+    if listed and _all_listed(found, ledger, list(listed)):
+        return listed
+    variables = sorted({*names.in_model(), names.outcome} - {""})
+    if found.incomplete == 0 or len(variables) > MOST_UNLISTED:
+        return None
+    possible = [frozenset(some) for n in range(1, len(variables) + 1) for some in combinations(variables, n)]
+    ledger.relate(INCOMPLETE, [("flow", "lacking", *sorted(some)) for some in possible])
+    return {("flow", "lacking", *sorted(some)): some for some in possible}
 
 
 def _all_listed(found: tree.Participants, ledger: Ledger, keys: list[Key]) -> bool:

@@ -11,7 +11,7 @@ from __future__ import annotations
 from itertools import product
 
 from fourfold.report.disclosure.ledger import Key, Ledger
-from fourfold.report.disclosure.places.flow import listed_patterns
+from fourfold.report.disclosure.places.flow import patterns_of
 from fourfold.report.disclosure.places.keys import (
     ANALYSED,
     ELIGIBLE,
@@ -50,7 +50,7 @@ class _Pair:
     def __init__(self, first: str, second: str, results: tree.Results, ledger: Ledger, names: Names) -> None:
         self.variables = first, second
         self.levels = names.levels(first), names.levels(second)
-        self.patterns = listed_patterns(results, ledger)
+        self.patterns = patterns_of(results, ledger, names)
         self.results, self.ledger, self.names = results, ledger, names
         self.modelled = set(self.variables) <= set(names.in_model())
 
