@@ -275,3 +275,8 @@ def test_deceptive_characters_become_visible_everywhere():
 def test_command_line_says_the_same_sentences():
     assert wording.answer_sentences(sample.cohort()) == answer.answer(Writer.of(sample.cohort()))
     assert "not for individual clinical decisions" in wording.standing_caution()
+
+
+def test_values_of_a_finding_may_have_any_name():
+    words = Writer.of(sample.cohort()).words
+    assert words.fill("{{ key }} {{ template }} {{ self_ }}", key=1, template=2, self_=3) == "1 2 3"

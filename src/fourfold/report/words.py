@@ -48,7 +48,7 @@ class Words:
         self._environment.globals.update(given or {})
         self._compiled: dict[str, Template] = {}
 
-    def say(self, key: str, **values: Any) -> str:
+    def say(self, key: str, /, **values: Any) -> str:
         """The text at ``key`` (``file.section.name``) with its placeholders filled.
 
         Raises
@@ -81,7 +81,7 @@ class Words:
             found = found[part]
         return found
 
-    def fill(self, template: str, **values: Any) -> str:
+    def fill(self, template: str, /, **values: Any) -> str:
         """Fill a text of a language file; runs of white space become one space."""
         if "{" not in template:
             return _single_spaced(template)

@@ -44,7 +44,7 @@ class Writer:
         given = words["designs"][safe.study.design]
         return cls(safe, numbers, Words(safe.analysis.language, numbers, labels, given))
 
-    def say(self, key: str, **values: Any) -> str:
+    def say(self, key: str, /, **values: Any) -> str:
         """A text of the language, filled; see `Words.say`."""
         return self.words.say(key, **values)
 
