@@ -69,8 +69,8 @@ def hide(results: tree.Results) -> tree.Results:
     hiding = rewrite.hide_at(rewrite.round_at(results, rounded), hidden)
     hiding = _with_notes(hiding, hidden)
     hiding = _without_shares(_with_thin_curve(hiding, truth, ledger), ledger)
-    hiding = replace(hiding, findings=[])
-    hiding = replace(hiding, findings=findings.hide(results.findings, ledger, _doubles(hiding)))
+    shown = _doubles([hiding.estimates, hiding.tables, hiding.discrimination])
+    hiding = replace(hiding, findings=findings.hide(results.findings, ledger, shown))
     return _without_hash(hiding, ledger)
 
 

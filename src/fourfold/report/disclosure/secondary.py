@@ -75,7 +75,11 @@ def _protect(room: Room, keys: list[Key]) -> list[list[int]]:
         }
         table = room.make(key, value, leaning)
         if table is None:
-            raise AssertionError(f"the counts around {key} contradict each other")
+            # The tree contradicts itself, so nothing can be proved of it: all that bears on the
+            # count is hidden.
+            _hide_around(room, key)
+            waiting = {other: None for other in waiting if other[0] != key}
+            continue
         tables.append([round(number) for number in table])
         _hide_what_differs(room, tables[-1])
         _unmark_what_exceeds(room, tables[-1])
@@ -100,7 +104,7 @@ def _widen(room: Room, tables: list[list[int]]) -> None:
     ledger, width = room.ledger, room.ledger.limit.smallest
     values = [ledger.counts[key].value for key in room.keys]
     known = np.array([[np.nan if value is None else value for value in values], *tables], dtype=float)
-    lowest, highest = np.nanmin(known, axis=0), np.nanmax(known, axis=0)
+    lowest, highest = np.fmin.reduce(known, axis=0), np.fmax.reduce(known, axis=0)
     done: set[Key] = set()
     while True:
         narrow = [
@@ -134,6 +138,26 @@ def _hide_what_differs(room: Room, table: list[int]) -> None:
     for key, number in zip(room.keys, table, strict=True):
         count = room.ledger.counts[key]
         if count.shown and number != count.value:
+            count.hidden = SUBTRACTION
+
+
+def _hide_around(room: Room, key: Key) -> None:
+    """Hide every count that a sum links with this one, directly or through counts not shown."""
+    ledger = room.ledger
+    reached, waiting = {key}, [key]
+    while waiting:
+        at = waiting.pop()
+        for relation in ledger.relations:
+            if at not in relation:
+                continue
+            for other in relation:
+                if other not in reached:
+                    reached.add(other)
+                    if not ledger.counts[other].shown:
+                        waiting.append(other)
+    for other in reached:
+        count = ledger.counts[other]
+        if count.shown and count.value:
             count.hidden = SUBTRACTION
 
 
