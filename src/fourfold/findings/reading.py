@@ -88,7 +88,7 @@ def many(results: tree.Results) -> Noticed | None:
     expected = len(exposures) * (1 - results.analysis.confidence / 100)
     return Noticed(
         CONCERN,
-        {"n": len(exposures), "expected": expected, "confidence": results.analysis.confidence},
+        {"exposures": len(exposures), "expected": expected, "confidence": results.analysis.confidence},
         exposures,
     )
 
