@@ -224,9 +224,13 @@ def test_the_whole_fit_goes_where_it_is_the_table_over_again() -> None:
         estimates=tree.Estimates(crude=few.estimates.crude[:1], adjusted=few.estimates.adjusted[:1]),
         model=replace(full.model, n=few.model.n, events=few.model.events),
         risk_distribution=[], outcome_by_quantity=[], findings=[],
+        collinearity=tree.Collinearity(
+            gvif=[tree.Gvif(term="c0", label="C0", df=1, gvif=1.25, scaled=1.118)], condition_index=2.5
+        ),
     )  # fmt: skip
     hidden = hide(truth)
     assert hidden.tables[0].a is None
+    assert hidden.collinearity is None
     assert hidden.estimates.adjusted[0].odds_ratio is None
     assert hidden.model.coefficients == [None] * 5
     assert hidden.model.covariance is hidden.model.log_likelihood is hidden.model.r_squared is None

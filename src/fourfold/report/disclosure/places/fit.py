@@ -23,6 +23,9 @@ LIKELIHOODS = (
 WITH_N = ("null_log_likelihood", "likelihood_ratio", "likelihood_ratio_p", "bic", "r_squared")
 """What tells the number of people or events, given the rest of the model."""
 
+WHOLE_NUMBERS = 4
+"""Unknown counts for each number of a covariance matrix: whole numbers need fewer equations."""
+
 FURTHER_EQUATIONS = 3
 """Log-likelihood, log-likelihood without covariates, and number of people."""
 
@@ -49,7 +52,7 @@ def _revealing(results: tree.Results, ledger: Ledger, names: Names) -> Iterator[
     printed = 2 * (parameters - 1) + margins + joint + FURTHER_EQUATIONS
     if len(terms) == 1 or unknown <= printed:
         yield from _all_of_the_fit(results, names)
-    elif unknown <= printed + parameters * (parameters + 1) // 2:
+    elif unknown <= printed + WHOLE_NUMBERS * parameters * (parameters + 1) // 2:
         yield ("model", "covariance")
 
 
@@ -62,6 +65,8 @@ def _all_of_the_fit(results: tree.Results, names: Names) -> Iterator[Path]:
             yield from (("estimates", "adjusted", place, field) for field in ESTIMATE_FIGURES)
     for place in range(len(results.term_tests)):
         yield from (("term_tests", place, field) for field in ("statistic", "p_value"))
+    # Inflation factors tell how terms go together, and so the people at levels of both.
+    yield ("collinearity",)
     yield from _discrimination(results)
     yield from _calibration(results)
     yield from _sample_size(results, ("shrinkage", "r_squared", "required", "shortfall"))
