@@ -1,6 +1,6 @@
 """Invent the rows of the harvest-supper outbreak: seeded, so that the same file comes back.
 
-    python make_data.py            # writes harvest-supper.csv beside this script
+python make_data.py            # writes harvest-supper.csv beside this script
 """
 
 from __future__ import annotations

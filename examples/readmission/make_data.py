@@ -1,6 +1,6 @@
 """Invent the rows of the readmission study: seeded, so that the same file comes back.
 
-    python make_data.py            # writes readmission.csv beside this script
+python make_data.py            # writes readmission.csv beside this script
 """
 
 from __future__ import annotations
@@ -38,7 +38,17 @@ def main() -> None:
     with Path(__file__).with_name("readmission.csv").open("w", newline="", encoding="utf-8") as file:
         write = csv.writer(file)
         write.writerow(
-            ["stay", "age", "nights", "admissions", "creatinine", "haemoglobin", "alone", "heart", "readmitted"]
+            [
+                "stay",
+                "age",
+                "nights",
+                "admissions",
+                "creatinine",
+                "haemoglobin",
+                "alone",
+                "heart",
+                "readmitted",
+            ]
         )
         for i in range(ROWS):
             write.writerow(

@@ -29,7 +29,12 @@ BIRTHWT: dict[str, Any] = {
         "smoke": {"label": "Smoking", **BINARY},
         "age": {"label": "Age", "kind": "quantity", "unit": "years"},
         "lwt": {"label": "Weight", "kind": "quantity", "unit": "pounds"},
-        "race": {"label": "Race", "kind": "category", "levels": ["white", "black", "other"], "reference": "white"},
+        "race": {
+            "label": "Race",
+            "kind": "category",
+            "levels": ["white", "black", "other"],
+            "reference": "white",
+        },
         "ptl": {"label": "Premature labours", "kind": "quantity", "unit": "labours"},
         "ht": {"label": "Hypertension", **BINARY},
         "ui": {"label": "Uterine irritability", **BINARY},

@@ -49,11 +49,11 @@ def test_coverage_of_profile_and_wald_intervals(name, capsys):
         half = 1.959963984540054 * np.sqrt(np.diag(fit.covariance)[1:])
         wald_holds += np.abs(fit.coefficients[1:] - truth) <= half
     used = REPETITIONS - separated
+    by_profile, by_wald = (100 * holds / used for holds in (profile_holds, wald_holds))
     with capsys.disabled():
         print(
-            f"\n{name}: profile {100 * profile_holds.min() / used:.1f} to {100 * profile_holds.max() / used:.1f}%"
-            f", Wald {100 * wald_holds.min() / used:.1f} to {100 * wald_holds.max() / used:.1f}%"
-            f", separated {separated}"
+            f"\n{name}: profile {by_profile.min():.1f} to {by_profile.max():.1f}%, "
+            f"Wald {by_wald.min():.1f} to {by_wald.max():.1f}%, separated {separated}"
         )
     coverage = profile_holds / used
     assert np.abs(coverage - 0.95).max() < 4 * STANDARD_ERROR

@@ -10,7 +10,6 @@ import copy
 import math
 
 import pytest
-
 from tests.pipeline.conftest import BINARY, BIRTHWT, reference
 
 CLOSE = 1e-6
@@ -132,8 +131,12 @@ def test_birthwt_trust(birthwt):
     assert calibration.slope is None
     assert calibration.in_the_large is None
     assert birthwt.sample_size.shrinkage == pytest.approx(expected["heuristic_shrinkage"], rel=CLOSE)
-    assert birthwt.influence.largest_leverage == pytest.approx(expected["influence"]["max_leverage"], rel=CLOSE)
-    assert birthwt.influence.largest_cook == pytest.approx(expected["influence"]["max_cook_distance"], rel=CLOSE)
+    assert birthwt.influence.largest_leverage == pytest.approx(
+        expected["influence"]["max_leverage"], rel=CLOSE
+    )
+    assert birthwt.influence.largest_cook == pytest.approx(
+        expected["influence"]["max_cook_distance"], rel=CLOSE
+    )
     gvif = {found.term: found.gvif for found in birthwt.collinearity.gvif}
     for row in expected["collinearity"]["gvif"]:
         assert gvif[row["term"]] == pytest.approx(row["gvif"], rel=CLOSE)
@@ -149,7 +152,9 @@ def test_birthwt_fourfold_table(birthwt):
         expected["unexposed_events"], expected["unexposed_non_events"],
     )  # fmt: skip
     assert table.odds_ratio.estimate == pytest.approx(expected["odds_ratio"], rel=CLOSE)
-    assert [table.odds_ratio.lower, table.odds_ratio.upper] == pytest.approx(expected["woolf_interval"], rel=CLOSE)
+    assert [table.odds_ratio.lower, table.odds_ratio.upper] == pytest.approx(
+        expected["woolf_interval"], rel=CLOSE
+    )
     assert table.risk_ratio.estimate == pytest.approx(expected["risk_ratio"], rel=CLOSE)
     assert [table.risk_difference.lower, table.risk_difference.upper] == pytest.approx(
         expected["risk_difference_newcombe"], rel=CLOSE
