@@ -5,13 +5,18 @@ Data: the open cases of tests/reference (its README names their sources).
 
 from __future__ import annotations
 
+import errno
 import json
+import os
 import re
 import shutil
 from pathlib import Path
 
 import pytest
 import yaml
+
+from fourfold.errors import RenderingError
+from fourfold.pipeline import draft
 
 REFERENCE = Path(__file__).parents[1] / "reference"
 
@@ -110,3 +115,13 @@ def test_a_draft_in_another_folder_still_finds_its_data(run, tmp_path):
     inside.write_text(answered(inside.read_text(encoding="utf-8"), ANSWERS["birthwt"]), encoding="utf-8")
     assert run("check", "studies/study.yaml").returncode == 3
     assert run("check", "--allow-outside", "studies/study.yaml").returncode == 0
+
+
+def test_a_disk_that_fills_leaves_no_half_draft(tmp_path, monkeypatch):
+    def full(_: int) -> None:
+        raise OSError(errno.ENOSPC, os.strerror(errno.ENOSPC))
+
+    monkeypatch.setattr("fourfold.pipeline.draft.os.fsync", full)
+    with pytest.raises(RenderingError, match="No space left on device"):
+        draft.save("study:\n", tmp_path / "study.yaml")
+    assert list(tmp_path.iterdir()) == []
