@@ -23,6 +23,13 @@ def interval(lower: float | None, upper: float | None) -> tree.Results:
     return alter.adjusted("stove", lower=lower, upper=upper)
 
 
+def sparse_exposure() -> tree.Results:
+    """The crude odds ratio moves, but is hidden with the counts that it is made of."""
+    results = alter.crude("stove", odds_ratio=4.0)
+    levels = [replace(one, events=3) if one.level == "yes" else one for one in results.audit.levels]
+    return replace(results, audit=replace(results.audit, levels=levels))
+
+
 def category_exposure() -> tree.Results:
     results = alter.variable("stove", kind="category", levels=["none", "old", "new"], reference="none")
     return replace(results, tables=[])
@@ -65,6 +72,8 @@ CASES = {
             lambda: common(1.1, (540, 1260)),
             lambda: alter.case_control(common(3.5, (540, 1260))),
             lambda: prediction(common(3.5, (540, 1260))),
+            # Counts are hidden: whether the event is common among the unexposed must not be told.
+            lambda: common(3.5, (3, 12)),
         ],
     ),
     "OR-case-control-risk": Case(
@@ -100,6 +109,7 @@ CASES = {
         [(lambda: alter.crude("stove", odds_ratio=2.0), "remark")],
         [
             sound_study,
+            sparse_exposure,
             lambda: alter.crude("stove", odds_ratio=1.9),
             lambda: alter.crude("stove", odds_ratio=None),
         ],

@@ -3,13 +3,19 @@
 from __future__ import annotations
 
 import pytest
-from tests.findings import cases_design, cases_fit, cases_reading, cases_rows
+from tests.findings import cases_design, cases_fit, cases_flow, cases_reading, cases_rows
 from tests.findings.trees import Build
 
 from fourfold.findings.catalogue import CATALOGUE, notice
 from fourfold.results import tree
 
-CASES = {**cases_rows.CASES, **cases_design.CASES, **cases_fit.CASES, **cases_reading.CASES}
+CASES = {
+    **cases_rows.CASES,
+    **cases_flow.CASES,
+    **cases_design.CASES,
+    **cases_fit.CASES,
+    **cases_reading.CASES,
+}
 
 FIRES = [
     pytest.param(id, build, grade, id=f"{id}-{place}")
@@ -42,4 +48,6 @@ def test_keeps_silent(id: str, build: Build):
 
 
 def test_cases_of_different_files_do_not_overwrite_each_other():
-    assert len(CASES) == sum(len(part.CASES) for part in (cases_rows, cases_design, cases_fit, cases_reading))
+    assert len(CASES) == sum(
+        len(part.CASES) for part in (cases_rows, cases_flow, cases_design, cases_fit, cases_reading)
+    )

@@ -25,7 +25,13 @@ data: {file: rows.csv, identifier: person}
 variables:
   cough: {label: Night cough within a year, kind: binary, present: "yes"}
   stove: {label: Wood stove, kind: binary, present: "yes", expected: raises}
-  age: {label: Age, kind: quantity, unit: years, plausible: [18, 100], shape: {spline: {knots: 3}}, reference: 50}
+  age:
+    label: Age
+    kind: quantity
+    unit: years
+    plausible: [18, 100]
+    shape: {spline: {knots: 3}}
+    reference: 50
   village: {label: Village, kind: category, levels: [Upper, Lower], reference: Upper}
 outcome: cough
 exposures: [{variable: stove, planned: true}]
@@ -119,8 +125,8 @@ def test_one_slip_in_the_rows_is_noticed(id: str, tmp_path: Path):
         ("DSN-censoring", "statement: [equal]", "statement: [censored]"),
         ("DAT-outcome-reversed", "expected: raises", "expected: lowers"),
         ("DAT-outcome-reversed", 'kind: binary, present: "yes"}', 'kind: binary, present: "no"}'),
-        ("COD-unit", "unit: years, ", ""),
-        ("EXT-range", "reference: 50}", "reference: 50, compare: [[50, 130]]}"),
+        ("COD-unit", "    unit: years\n", ""),
+        ("EXT-range", "reference: 50\n", "reference: 50\n    compare: [[50, 130]]\n"),
         ("OR-case-control-risk", "design: cohort", "design: case-control"),
         ("AUC-apparent", "purpose: association", "purpose: prediction"),
     ],

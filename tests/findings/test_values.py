@@ -6,7 +6,7 @@ import math
 from typing import Any
 
 import pytest
-from tests.findings import alter, cases_design, cases_fit, cases_reading, cases_rows
+from tests.findings import alter, cases_design, cases_fit, cases_flow, cases_reading
 
 from fourfold.findings.catalogue import CATALOGUE
 from fourfold.results import tree
@@ -82,7 +82,7 @@ def test_flow_says_what_is_stated_and_what_the_other_boxes_give():
 
 
 def test_share_lost():
-    assert values("MIS-dropped", cases_rows.lost(601))["share"] == pytest.approx(100 * 601 / 3000)
+    assert values("MIS-dropped", cases_flow.lost(601))["share"] == pytest.approx(100 * 601 / 3000)
 
 
 def test_only_what_was_not_adjusted_for_is_named_as_missing():

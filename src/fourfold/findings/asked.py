@@ -50,6 +50,36 @@ def rarer(results: tree.Results) -> int | None:
     return None if events is None or others is None else min(events, others)
 
 
+def small(results: tree.Results, count: int | None) -> bool:
+    """Will this count be hidden?
+
+    That a finding is made must not tell more of a hidden count than that it is small: where one is
+    looked at, rules ask this first, so that all counts that are hidden alike are treated alike.
+    """
+    least = 0 if results.analysis.hide_zero else 1
+    return count is not None and least <= count < results.analysis.smallest_count
+
+
+def few(results: tree.Results, wanted: int) -> int:
+    """A threshold for counts that does not part hidden counts from each other."""
+    return max(wanted, results.analysis.smallest_count)
+
+
+def small_cells(results: tree.Results, name: str) -> bool:
+    """Is some count of a variable's levels, by outcome, going to be hidden?"""
+    return any(
+        small(results, count)
+        for one in results.audit.levels
+        if one.variable == name
+        for count in (one.events, one.non_events)
+    )
+
+
+def model_names(results: tree.Results) -> list[str]:
+    """Names of all variables of the model: what a figure of the whole fit is about."""
+    return [variable.name for variable in modelled(results)]
+
+
 def adjusted(results: tree.Results, *roles: str) -> list[tree.Estimate]:
     """Adjusted estimates of variables with one of these roles; of all where none is named."""
     return [one for one in results.estimates.adjusted if not roles or one.role in roles]

@@ -46,9 +46,10 @@ def reference_small(results: tree.Results) -> Noticed | None:
         events, others = sizes[variable.reference]
         everyone = sum(e + n for e, n in sizes.values())
         share = 100 * (events + others) / everyone if everyone else 0.0
-        # Where no level has more to lean on, another choice would not help.
-        better = any(min(size) > min(events, others) for size in sizes.values())
-        if better and (min(events, others) < FEW or share < SMALL_SHARE):
+        least = asked.few(results, FEW)
+        # Where no level has enough to lean on, another choice would not help.
+        better = any(min(size) >= least for level, size in sizes.items() if level != variable.reference)
+        if better and (min(events, others) < least or share < SMALL_SHARE):
             found.append(
                 {
                     "variable": variable.name,
@@ -95,11 +96,12 @@ def cut_by_data(results: tree.Results) -> Noticed | None:
 
 def sparse_level(results: tree.Results) -> Noticed | None:
     found: list[dict[str, Any]] = []
+    least = asked.few(results, SPARSE)
     for one in results.audit.levels:
         if one.events is None or one.non_events is None:
             continue
         # A level that nobody has is no sparse cell; it is told as an unused level.
-        if one.events + one.non_events > 0 and min(one.events, one.non_events) < SPARSE:
+        if one.events + one.non_events > 0 and min(one.events, one.non_events) < least:
             found.append(
                 {
                     "variable": one.variable,

@@ -91,8 +91,18 @@ def constant(results: tree.Results) -> Noticed | None:
 
 
 def near_constant(results: tree.Results) -> Noticed | None:
-    names = results.audit.near_constant
-    return Noticed(REMARK, {"names": list(names)}, list(names)) if names else None
+    names = [name for name in results.audit.near_constant if not _few_others(results, name)]
+    return Noticed(REMARK, {"names": names}, names) if names else None
+
+
+def _few_others(results: tree.Results, name: str) -> bool:
+    """Are those without the frequent level so few that they are hidden? They are told as sparse."""
+    sizes = [
+        one.events + one.non_events
+        for one in results.audit.levels
+        if one.variable == name and one.events is not None and one.non_events is not None
+    ]
+    return bool(sizes) and asked.small(results, sum(sizes) - max(sizes))
 
 
 def duplicated_column(results: tree.Results) -> Noticed | None:

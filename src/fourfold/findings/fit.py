@@ -138,11 +138,12 @@ def hauck_donner(results: tree.Results) -> Noticed | None:
 def wald_sparse(results: tree.Results) -> Noticed | None:
     if results.analysis.intervals != "Wald":
         return None
+    least = asked.few(results, SMALL_CELL)
     found = [
         {"variable": one.variable, "level": one.level, "events": one.events, "non_events": one.non_events}
         for one in results.audit.levels
         if one.events is not None and one.non_events is not None
-        if one.events + one.non_events > 0 and min(one.events, one.non_events) < SMALL_CELL
+        if one.events + one.non_events > 0 and min(one.events, one.non_events) < least
     ]
     return Noticed(CONCERN, {"found": found}, asked.names(found)) if found else None
 

@@ -62,7 +62,7 @@ def dropped(results: tree.Results) -> Noticed | None:
 def _lost(results: tree.Results) -> float | None:
     """Percent of eligible people who are not in the adjusted model."""
     flow = results.participants
-    if flow.incomplete is None or not flow.eligible:
+    if flow.incomplete is None or not flow.eligible or asked.small(results, flow.incomplete):
         return None
     return 100 * flow.incomplete / flow.eligible
 
@@ -72,7 +72,10 @@ def much_missing(results: tree.Results) -> Noticed | None:
     found = [
         {"variable": one.variable, "count": one.count, "share": one.percent}
         for one in results.participants.missing
-        if one.variable in needed and one.percent is not None and one.percent >= MUCH_MISSING
+        if one.variable in needed
+        and one.percent is not None
+        and one.percent >= MUCH_MISSING
+        and not asked.small(results, one.count)
     ]
     return Noticed(CONCERN, {"found": found}, asked.names(found)) if found else None
 
@@ -81,13 +84,15 @@ def missing_outcome(results: tree.Results) -> Noticed | None:
     outcome = {variable.name for variable in asked.of_role(results, "outcome")}
     for one in results.participants.missing:
         if one.variable in outcome and one.count:
-            grade = CONCERN if one.percent is not None and one.percent > MUCH_LOST else REMARK
+            many = one.percent is not None and one.percent > MUCH_LOST
+            grade = CONCERN if many and not asked.small(results, one.count) else REMARK
             return Noticed(grade, {"count": one.count, "share": one.percent}, [one.variable])
     return None
 
 
 def depends(results: tree.Results) -> Noticed | None:
-    tests = [one for one in results.participants.missing_associations if one.p_value is not None]
+    looked = results.participants.missing_associations
+    tests = [(one, _largest_p(results, one)) for one in looked if one.p_value is not None]
     # Bonferroni: with many incomplete variables one of them would be found by chance.
     found = [
         {
@@ -97,14 +102,40 @@ def depends(results: tree.Results) -> Noticed | None:
             "upper": one.upper,
             "p_value": one.p_value,
         }
-        for one in tests
-        if one.p_value is not None and one.p_value < FALSE_ALARMS / len(tests)
+        for one, p in tests
+        if p is not None and p < FALSE_ALARMS / len(tests)
     ]
     if not found:
         return None
     share = _lost(results)
     grade = SERIOUS if share is not None and share > MUCH_LOST else CONCERN
     return Noticed(grade, {"found": found}, asked.names(found))
+
+
+def _largest_p(results: tree.Results, found: tree.MissingAssociation) -> float | None:
+    """The P-value; where a count of the table is hidden, the largest that any such count could give.
+
+    Otherwise the finding would tell which of the small counts it is.
+    """
+    a, c = found.events_incomplete, found.events_complete
+    if a is None or c is None or found.incomplete is None or found.complete is None:
+        return None
+    cells = (a, found.incomplete - a, c, found.complete - c)
+    if not any(asked.small(results, cell) for cell in cells):
+        return found.p_value
+    from fourfold.measures.hypergeometric import fisher
+
+    events, row, other = a + c, found.incomplete, found.complete
+    hidden = range(results.analysis.smallest_count)
+    first = {x for n in hidden for x in (n, row - n, events - n, events - other + n)}
+    tables = [(x, row - x, events - x, other - events + x) for x in first]
+    alike = [
+        table
+        for table in tables
+        if min(table) >= 0
+        and [asked.small(results, cell) for cell in table] == [asked.small(results, cell) for cell in cells]
+    ]
+    return max(fisher(*table) for table in alike)
 
 
 def crude_adjusted_rows(results: tree.Results) -> Noticed | None:

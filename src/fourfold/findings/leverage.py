@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from typing import Any
 
 from fourfold.findings import asked
 from fourfold.findings.entry import CONCERN, REMARK, SERIOUS, Entry, Noticed
@@ -46,21 +47,16 @@ def _grade(results: tree.Results, names: list[str]) -> str:
 def one_row(results: tree.Results) -> Noticed | None:
     if results.influence is None:
         return None
-    found = []
-    for one in results.influence.terms:
-        change = one.largest_change_refitted
-        if change is None:
-            change = one.largest_change
+    found: list[dict[str, Any]] = []
+    for name in dict.fromkeys(one.term for one in results.influence.terms):
+        own = [one for one in results.influence.terms if one.term == name]
+        # A term of several columns is told once, by the column that moves most.
+        most = max(own, key=lambda one: math.inf if _change(one) is None else abs(_change(one) or 0.0))
+        change = _change(most)
         size = None if change is None else abs(change)
-        if one.crosses_one or (size is not None and size > MOVED):
-            found.append(
-                {
-                    "variable": one.term,
-                    "parameter": one.parameter,
-                    "change": size,
-                    "crosses": one.crosses_one,
-                }
-            )
+        crosses = any(one.crosses_one for one in own)
+        if crosses or (size is not None and size > MOVED):
+            found.append({"variable": name, "change": size, "crosses": crosses})
     if not found:
         return None
     turned = any(item["crosses"] and _moved(item["change"], MOVED) for item in found)
@@ -71,6 +67,12 @@ def one_row(results: tree.Results) -> Noticed | None:
     else:
         grade = REMARK
     return Noticed(grade, {"found": found}, asked.names(found))
+
+
+def _change(term: tree.InfluenceTerm) -> float | None:
+    if term.largest_change_refitted is not None:
+        return term.largest_change_refitted
+    return term.largest_change
 
 
 def _moved(change: object, least: float) -> bool:
@@ -84,6 +86,7 @@ ENTRIES = (
         section="trust",
         source="Fox & Monette 1992, J Am Stat Assoc 87:178-83",
         rule=gvif,
+        derived=("found[].scaled",),
     ),
     Entry(
         id="COL-condition",
@@ -91,11 +94,13 @@ ENTRIES = (
         source="Belsley, Kuh & Welsch 1980, Regression Diagnostics; "
         "Lesaffre & Marx 1993, Commun Stat Theory Methods 22:1933-52",
         rule=condition,
+        derived=("index",),
     ),
     Entry(
         id="INF-one-row",
         section="trust",
         source="Pregibon 1981, Ann Stat 9:705-24",
         rule=one_row,
+        derived=("found[].change",),
     ),
 )

@@ -57,14 +57,15 @@ def hl_thin(results: tree.Results) -> Noticed | None:
         return None
     grade = CONCERN if no_verdict and asked.prediction(results) else REMARK
     values = {"groups": test.groups, "smallest": smallest, "verdict": test.verdict}
-    return Noticed(grade, values)
+    return Noticed(grade, values, asked.model_names(results))
 
 
 def hl_departs(results: tree.Results) -> Noticed | None:
     test = _test(results)
     if test is None or test.verdict is not None or test.p_value is None or test.p_value >= CHANCE:
         return None
-    return Noticed(CONCERN, {"p_value": test.p_value, "groups": test.groups})
+    values = {"p_value": test.p_value, "groups": test.groups}
+    return Noticed(CONCERN, values, asked.model_names(results))
 
 
 def _test(results: tree.Results) -> tree.HosmerLemeshow | None:
@@ -78,7 +79,7 @@ def auc_apparent(results: tree.Results) -> Noticed | None:
         return None
     if results.calibration is not None and results.calibration.basis != FITTING_DATA:
         return None
-    return Noticed(SERIOUS, {"auc": found.auc})
+    return Noticed(SERIOUS, {"auc": found.auc}, asked.model_names(results))
 
 
 def auc_no_interval(results: tree.Results) -> Noticed | None:
@@ -87,7 +88,7 @@ def auc_no_interval(results: tree.Results) -> Noticed | None:
         return None
     if found.lower is not None or found.upper is not None:
         return None
-    return Noticed(CONCERN, {"auc": found.auc})
+    return Noticed(CONCERN, {"auc": found.auc}, asked.model_names(results))
 
 
 def validation_none(results: tree.Results) -> Noticed | None:
@@ -142,6 +143,7 @@ ENTRIES = (
         section="trust",
         source="Hosmer & Lemeshow 1980, Commun Stat A9:1043-69",
         rule=hl_departs,
+        derived=("p_value",),
     ),
     Entry(
         id="AUC-apparent",

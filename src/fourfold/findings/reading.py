@@ -25,6 +25,8 @@ def not_risk(results: tree.Results) -> Noticed | None:
     for table in results.tables:
         if table.c is None or table.d is None or table.c + table.d == 0 or table.risk_ratio is None:
             continue
+        if any(asked.small(results, cell) for cell in (table.a, table.b, table.c, table.d)):
+            continue
         baseline = table.c / (table.c + table.d)
         ratio, kind = _odds_ratio(results, table)
         if ratio is None or baseline <= COMMON:
@@ -100,6 +102,9 @@ def collapse(results: tree.Results) -> Noticed | None:
     found: list[dict[str, Any]] = []
     for one in asked.adjusted(results, "exposure"):
         before = crude.get(_key(one))
+        # A crude odds ratio is a function of its counts: where they are hidden nothing is said of it.
+        if asked.small_cells(results, one.term):
+            continue
         if before and one.odds_ratio and abs(one.odds_ratio / before - 1) > APART:
             found.append({**asked.which(one), "crude": before, "adjusted": one.odds_ratio})
     return Noticed(REMARK, {"found": found}, asked.names(found)) if found else None

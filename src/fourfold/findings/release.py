@@ -50,7 +50,7 @@ def _counts(results: tree.Results) -> Iterator[int]:
 
 def unreliable(results: tree.Results) -> Noticed | None:
     events = results.participants.events
-    if events is None or not 0 < events < RELIABLE:
+    if events is None or not 0 < events < asked.few(results, RELIABLE):
         return None
     return Noticed(CONCERN, {"events": events, "error": 100 / math.sqrt(events)})
 

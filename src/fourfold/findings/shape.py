@@ -82,6 +82,7 @@ ENTRIES = (
         source="Harrell 2015, Regression Modeling Strategies, 2nd edition, chapter 2; "
         "Royston, Altman & Sauerbrei 2006, Stat Med 25:127-41",
         rule=not_straight,
+        derived=("found[].p_value",),
     ),
     Entry(
         id="LIN-unassessed",

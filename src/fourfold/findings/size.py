@@ -20,8 +20,10 @@ def events_per_parameter(results: tree.Results) -> Noticed | None:
     ratio = size.events_per_parameter
     if ratio >= FEW_PER_PARAMETER:
         return None
-    values = {"ratio": ratio, "fewer": asked.rarer(results), "parameters": size.candidate_parameters}
-    return Noticed(SERIOUS if ratio < VERY_FEW_PER_PARAMETER else CONCERN, values)
+    fewer = asked.rarer(results)
+    values = {"ratio": ratio, "fewer": fewer, "parameters": size.candidate_parameters}
+    grave = ratio < VERY_FEW_PER_PARAMETER or asked.small(results, fewer)
+    return Noticed(SERIOUS if grave else CONCERN, values)
 
 
 def riley(results: tree.Results) -> Noticed | None:
@@ -40,7 +42,8 @@ def riley(results: tree.Results) -> Noticed | None:
         "criteria": criteria,
         "assumed": size.r_squared_assumed,
     }
-    return Noticed(SERIOUS if 2 * size.shortfall > size.required else CONCERN, values)
+    grade = SERIOUS if 2 * size.shortfall > size.required else CONCERN
+    return Noticed(grade, values, asked.model_names(results))
 
 
 def shrinkage(results: tree.Results) -> Noticed | None:
@@ -49,11 +52,12 @@ def shrinkage(results: tree.Results) -> Noticed | None:
         return None
     factor = size.shrinkage
     if asked.prediction(results):
-        return Noticed(SERIOUS if factor < SHRINKAGE_NEEDED else CONCERN, {"factor": factor})
+        grade = SERIOUS if factor < SHRINKAGE_NEEDED else CONCERN
+        return Noticed(grade, {"factor": factor}, asked.model_names(results))
     # A weak association makes the factor small in samples of any size: no fault of the size then.
     p = results.model.likelihood_ratio_p
     if factor < SHRINKAGE_NEEDED and p is not None and p < CHANCE:
-        return Noticed(REMARK, {"factor": factor})
+        return Noticed(REMARK, {"factor": factor}, asked.model_names(results))
     return None
 
 
@@ -96,6 +100,7 @@ ENTRIES = (
         section="trust",
         source="van Houwelingen & le Cessie 1990, Stat Med 9:1303-25",
         rule=shrinkage,
+        derived=("factor",),
     ),
     Entry(
         id="CAL-few-events",

@@ -69,8 +69,7 @@ def hide(results: tree.Results) -> tree.Results:
     hiding = rewrite.hide_at(rewrite.round_at(results, rounded), hidden)
     hiding = _with_notes(hiding, hidden)
     hiding = _without_shares(_with_thin_curve(hiding, truth, ledger), ledger)
-    shown = _doubles([hiding.estimates, hiding.tables, hiding.discrimination])
-    hiding = replace(hiding, findings=findings.hide(results.findings, ledger, shown))
+    hiding = replace(hiding, findings=findings.hide(results.findings, ledger, _shown(hiding)))
     return _without_hash(hiding, ledger)
 
 
@@ -182,6 +181,20 @@ def _without_hash(results: tree.Results, ledger: Ledger) -> tree.Results:
         return results
     provenance = replace(found, data_sha256=None, hidden={**found.hidden, "data_sha256": DERIVED})
     return replace(results, provenance=provenance)
+
+
+def _shown(results: tree.Results) -> Iterator[float]:
+    """What is still told of the fit once small counts are hidden."""
+    size = results.sample_size
+    yield from _doubles(
+        [
+            results.estimates, results.term_tests, results.tables, results.discrimination,
+            results.calibration, size, results.influence, results.collinearity,
+        ]
+    )  # fmt: skip
+    if size is not None:
+        sizes = [size.required, size.shortfall, *(one.required for one in size.criteria)]
+        yield from (float(one) for one in sizes if one is not None)
 
 
 def _doubles(value: Any) -> Iterator[float]:
