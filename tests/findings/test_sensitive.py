@@ -3,9 +3,10 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
+from dataclasses import replace
 
 import pytest
-from tests.findings import cases_fit, cases_rows
+from tests.findings import alter, cases_fit, cases_rows
 from tests.findings.test_cases import FIRES
 from tests.findings.trees import Build
 
@@ -97,8 +98,6 @@ def numbers(results: tree.Results, id: str) -> Iterator[int | float]:
 
 
 def noticed(results: tree.Results) -> tree.Results:
-    from dataclasses import replace
-
     return replace(results, findings=catalogue.notice(results))
 
 
@@ -114,3 +113,16 @@ def test_the_hiding_pass_reaches_a_separated_group():
     results = noticed(cases_fit.separated("village", "separated upward", 4, 4, lower=1.2))
     assert 4 in set(numbers(results, "SEP-infinite"))
     assert 4 not in set(numbers(disclosure.hide(results), "SEP-infinite"))
+
+
+def test_figures_that_the_report_still_shows_are_not_hidden_in_a_finding():
+    # A level of four people is hidden; the size of the sample and the model's shrinkage are not.
+    results = alter.prediction(alter.size(shrinkage=0.79, required=3200, shortfall=200))
+    level = tree.SparseLevel(variable="village", level="Far", events=3, non_events=1, reference=False)
+    results = replace(results, audit=replace(results.audit, levels=[*results.audit.levels, level]))
+    hidden = disclosure.hide(noticed(results))
+    assert hidden.sample_size is not None
+    assert hidden.sample_size.shrinkage == 0.79
+    assert 0.79 in set(numbers(hidden, "SIZ-shrinkage"))
+    assert {3200, 200} <= set(numbers(hidden, "SIZ-riley"))
+    assert not {3, 1} & set(numbers(hidden, "COD-sparse-level"))

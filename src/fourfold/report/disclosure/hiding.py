@@ -184,17 +184,20 @@ def _without_hash(results: tree.Results, ledger: Ledger) -> tree.Results:
 
 
 def _shown(results: tree.Results) -> Iterator[float]:
-    """What is still told of the fit once small counts are hidden."""
-    size = results.sample_size
-    yield from _doubles(
-        [
-            results.estimates, results.term_tests, results.tables, results.discrimination,
-            results.calibration, size, results.influence, results.collinearity,
-        ]
-    )  # fmt: skip
+    """Figures that are still told once small counts are hidden, and that findings repeat."""
+    yield from _doubles([results.estimates, results.tables, results.discrimination])
+    size, influence, together = results.sample_size, results.influence, results.collinearity
+    found: list[float | None] = [test.p_value for test in results.term_tests]
     if size is not None:
-        sizes = [size.required, size.shortfall, *(one.required for one in size.criteria)]
-        yield from (float(one) for one in sizes if one is not None)
+        found += [size.shrinkage, size.required, size.shortfall, *(one.required for one in size.criteria)]
+    if influence is not None:
+        changes = [(one.largest_change, one.largest_change_refitted) for one in influence.terms]
+        found += [abs(change) for pair in changes for change in pair if change is not None]
+    if together is not None:
+        found += [together.condition_index, *(one.scaled for one in together.gvif)]
+    if results.calibration is not None and results.calibration.hosmer_lemeshow is not None:
+        found.append(results.calibration.hosmer_lemeshow.p_value)
+    yield from (float(one) for one in found if one is not None)
 
 
 def _doubles(value: Any) -> Iterator[float]:

@@ -70,7 +70,9 @@ def _hidden(finding: tree.Finding, ledger: Ledger, known: _Known) -> tree.Findin
     reasons = {path: SMALL if path in small else SUBTRACTION for path in counts if goes(path)}
     for one in found:
         touched = bool(known.totals or known.about & _about(finding, one.path))
-        if one.kind == catalogue.DERIVED and (goes(one.path) or touched) and one.value not in known.shown:
+        # Of a finding that is not known it is not known either what a figure repeats.
+        repeated = one.value in known.shown and finding.id in catalogue.CATALOGUE
+        if one.kind == catalogue.DERIVED and (goes(one.path) or touched) and not repeated:
             reasons[one.path] = DERIVED
     if known.totals:
         for path, value in places.numbers(finding.values):
