@@ -200,7 +200,11 @@ CASES = {
                 "concern",
             ),
         ],
-        [sound_study, lambda: alter.variable("stove", reference_rule="most frequent")],
+        [
+            sound_study,
+            lambda: alter.variable("stove", reference_rule="most frequent"),
+            lambda: alter.variable("age", shape="log2", reference_rule="median"),
+        ],
     ),
     "COD-reference-small": Case(
         [

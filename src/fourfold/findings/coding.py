@@ -21,7 +21,8 @@ def reference_unstated(results: tree.Results) -> Noticed | None:
     chosen = [
         variable
         for variable in asked.modelled(results)
-        if variable.reference_rule is not None and variable.kind != "binary"
+        # A binary variable has no choice, and an odds ratio per doubling has no reference.
+        if variable.reference_rule is not None and variable.kind != "binary" and variable.shape != "log2"
     ]
     if not chosen:
         return None
@@ -117,7 +118,7 @@ ENTRIES = (
     Entry(
         id="COD-reference-unstated",
         section="methods",
-        source="Khan et al. 2020, checks of reported logistic regression; common practice",
+        source="SAMPL guidelines (Lang & Altman 2015, Int J Nurs Stud 52:5-9)",
         rule=reference_unstated,
     ),
     Entry(
