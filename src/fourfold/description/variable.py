@@ -155,7 +155,7 @@ class Variable(Section):
         "How the log odds change with a quantity: linear, quadratic, log2 (per doubling) or a spline.",
         example="variables:\n  bmi: {label: Body-mass index, kind: quantity, shape: {spline: {knots: 4}}}",
         default="linear",
-        otherwise="linear, and the report tests whether a straight line fits.",
+        otherwise="linear; whether a straight line fits is then not tested, and a remark says so.",
     )
     from_: Text | None = key(
         "The quantity that these bands are cut from.",
