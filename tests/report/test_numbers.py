@@ -254,6 +254,15 @@ def test_means_have_one_decimal_more_than_was_recorded() -> None:
     assert say.mean_sd(7.0, None, 0) == f"7.0 ({ABSENT})"
 
 
+def test_computed_columns_are_not_printed_finer_than_their_spread() -> None:
+    assert say.recorded(6, 3.18) == 1
+    assert say.recorded(1, 0.042) == 1
+    assert say.recorded(6, 0.0421) == 3
+    assert say.recorded(2, 1192.7) == 0
+    assert say.recorded(0, 12.0) == 0
+    assert say.recorded(3, None) == 3
+
+
 @given(st.floats(-1e8, 1e8), st.integers(0, 6))
 def test_rounding_is_half_to_even_on_the_exact_double(x: float, digits: int) -> None:
     text = say.number(x, digits)

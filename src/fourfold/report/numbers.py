@@ -14,7 +14,8 @@ limits          the decimals of their estimate; more, up to four, where a limit 
                 would read as 1, or would read as 0: a limit never hides on which side of 1 it lies
 percentages     whole under 100 people, else one decimal; none under 20; what is neither nobody
                 nor everybody never reads 0% or 100%
-means           one decimal more than recorded, the standard deviation the same
+means           one decimal more than recorded, the standard deviation the same; no more than three
+                significant digits of the standard deviation
 other numbers   the decimals asked for; more, up to three, where a value that is not 0 would read
                 as 0; exact zero is ``0``
 =============== ================================================================================
@@ -193,6 +194,16 @@ class Numbers:
                 return _print(exact, more)
         step = Decimal(1).scaleb(-digits)
         return f"<{_grouped(step)}" if exact > 0 else f">{_grouped(-step)}"
+
+    def recorded(self, decimals: int, sd: float | None) -> int:
+        """Decimals to print values with: as recorded, but no finer than a hundredth of their spread.
+
+        Computed columns carry digits that no one measured; the mean then shows three significant
+        digits of the standard deviation (common practice).
+        """
+        if not sd:
+            return decimals
+        return max(0, min(decimals, 1 - math.floor(math.log10(sd))))
 
     def mean_sd(self, mean: Printable, sd: Printable, decimals: int, hidden: str | None = None) -> str:
         """Mean and standard deviation, ``54.3 (12.1)``, of values recorded to ``decimals``."""

@@ -78,17 +78,18 @@ def _sized(writer: Writer, name: str, size: int | None, hidden: str) -> str:
 def _quantity_rows(writer: Writer, described: tree.Descriptive) -> list[Row]:
     header = writer.say("labels.rows.with_unit", label=described.label, unit=described.unit)
     everyone = [described.overall, *described.groups]
+    decimals = writer.numbers.recorded(described.decimals, described.overall.sd)
     blanks = [cells.NOTHING] * len(everyone)
     return [
         Row(header, [*blanks, _missing(writer, described.overall)], "group"),
         Row(
             writer.say("labels.rows.mean_sd"),
-            [*(_mean(writer, cell, described.decimals) for cell in everyone), cells.NOTHING],
+            [*(_mean(writer, cell, decimals) for cell in everyone), cells.NOTHING],
             "level",
         ),
         Row(
             writer.say("labels.rows.median_quartiles"),
-            [*(_median(writer, cell, described.decimals) for cell in everyone), cells.NOTHING],
+            [*(_median(writer, cell, decimals) for cell in everyone), cells.NOTHING],
             "level",
         ),
     ]
