@@ -119,11 +119,25 @@ def _environment(language: str, numbers: Numbers, labels: Mapping[str, str]) -> 
     )
     environment.filters["listed"] = lambda items, joiner="and": listed(language, list(items), joiner)
     environment.filters["inline"] = lambda label: in_sentence(language, label)
+    environment.filters["step_of"] = lambda step, unit: step_of(language, step, unit)
     environment.filters["counted"] = _counting(language, numbers)
     environment.filters["compared"] = _comparing(language, environment)
     environment.filters["capital"] = capital
     environment.globals["cite"] = cite
     return environment
+
+
+def step_of(language: str, step: str, unit: str | None) -> str:
+    """A difference of a quantity after "per": ``10 years``, ``year`` for a step of 1, ``unit``."""
+    if step != "1":
+        return f"{step} {unit}" if unit else step
+    joining = assets.language_file(language, "labels")["joining"]
+    if not unit:
+        return str(joining["one_unit"])
+    for pattern, one in joining["singular"]:
+        if re.search(pattern, unit):
+            return re.sub(pattern, one, unit)
+    return unit
 
 
 def _counting(language: str, numbers: Numbers) -> Callable[[Any, str, str], str]:
