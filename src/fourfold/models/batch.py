@@ -14,7 +14,7 @@ from numpy.typing import NDArray
 from fourfold.models.blocks import aligned
 from fourfold.models.centring import Centring, centring
 from fourfold.models.lanes import THREADS_PAY_FROM, over_lanes
-from fourfold.models.likelihood import Chunk, Observed, Part
+from fourfold.models.likelihood import Chunk, Observed, Part, Sums
 
 Array = NDArray[np.float64]
 
@@ -145,6 +145,19 @@ class Standardised:
             sum((each.gradient for each in lanes), np.zeros((k, p))),
             matrices,
         )
+
+    def one(self, point: Array) -> Sums:
+        """Evaluate the likelihood at one point, with its information."""
+        sums = self.sums(point[None, :], information=True)
+        if sums.information is None:
+            raise AssertionError("the information was asked for")
+        return Sums(float(sums.log_likelihood[0]), sums.gradient[0], sums.information[0])
+
+    def bound(self) -> Array:
+        """X'CX / 4 of the standardised columns, which no information matrix exceeds."""
+        plain = Observed(self.observed.blocks, self.observed.event, self.observed.counts)
+        at_zero = Standardised(plain, self.centred, self.scale, self.change)
+        return at_zero.one(np.zeros(len(self.scale))).information
 
     def _add(self, total: BatchSums, chunk: Chunk, points: Array, work: Workspace) -> None:
         p, m = chunk.x.shape

@@ -9,33 +9,56 @@ import numpy as np
 from numpy.typing import NDArray
 
 from fourfold.models.batch import Standardised
-from fourfold.models.likelihood import Sums
-from fourfold.models.newton import HALVINGS, ITERATIONS, Curvature
+from fourfold.models.newton import Curvature, Optimum, maximise
 
 Array = NDArray[np.float64]
 
 DOUBLINGS = 60
 
+STEPS = 150
+"""Newton steps along a profile: far out the likelihood is nearly flat and each gains little."""
+
 
 class Profile:
-    """The profile log-likelihood of c'b above a target, each maximum started from the last."""
+    """The profile log-likelihood of c'b above a target.
+
+    Each maximum starts between those already known on either side: the log-likelihood is concave, so
+    that it is no lower there than on the line between them.
+    """
 
     def __init__(self, standardised: Standardised, start: Array, contrast: Array, target: float) -> None:
         self.standardised = standardised
         self.contrast = contrast
         self.target = target
-        self.point = start
+        self.points = {float(contrast @ start): start}
+        self.heights: dict[float, float] = {}
 
     def __call__(self, value: float) -> float:
-        self.point, sums = _constrained(self.standardised, self.point, self.contrast, value)
-        return sums.log_likelihood - self.target
+        if value not in self.heights:
+            start = self._start(value)
+            found = constrained_maximum(self.standardised, start, self.contrast)
+            self.points[value] = found.coefficients
+            self.heights[value] = found.sums.log_likelihood - self.target
+        return self.heights[value]
+
+    def _start(self, value: float) -> Array:
+        """A point with c'b = value, between known ones or beyond the nearest."""
+        below = [known for known in self.points if known <= value]
+        above = [known for known in self.points if known >= value]
+        if below and above:
+            left, right = max(below), min(above)
+            share = 0.0 if left == right else (value - left) / (right - left)
+            return (1 - share) * self.points[left] + share * self.points[right]
+        nearest = max(below) if below else min(above)
+        return self.points[nearest] + self.contrast * (value - nearest) / (self.contrast @ self.contrast)
 
     def unit(self) -> float:
-        """Standard error of c'b by the curvature at the current point."""
-        sums = self.standardised.sums(self.point[None, :], information=True)
-        curvature = None if sums.information is None else Curvature.of(sums.information[0])
+        """Standard error of c'b by the curvature at the first point; 1 where there is none."""
+        point = next(iter(self.points.values()))
+        information = self.standardised.one(point).information
+        curvature = Curvature.of(information)
         if curvature is None:
-            raise ArithmeticError("the information matrix is singular along the profile")
+            return 1.0
         return float(np.sqrt(self.contrast @ curvature.solve(self.contrast)))
 
 
@@ -57,7 +80,7 @@ def limit_by_bracketing(
     """
     profile = Profile(standardised, centre, contrast, target)
     inside = float(contrast @ centre)
-    step = 2 * profile.unit()
+    step = profile.unit()
     for _ in range(DOUBLINGS):
         outside = inside + side * step
         if profile(outside) < 0:
@@ -96,51 +119,16 @@ def _root(profile: Profile, inside: float, outside: float) -> float:
     return float(brentq(profile, inside, outside, xtol=1e-12 * max(1.0, abs(outside)), rtol=1e-14))
 
 
-def constrained_maximum(standardised: Standardised, start: Array, contrast: Array, value: float) -> Sums:
-    """Maximise the log-likelihood subject to c'b = value, from any start.
+def constrained_maximum(standardised: Standardised, start: Array, contrast: Array) -> Optimum:
+    """Maximise the log-likelihood among all b with the c'b that the start has.
 
     Raises
     ------
     ArithmeticError
-        If the information is singular or the steps do not settle.
+        If the steps do not settle.
     """
-    return _constrained(standardised, start, contrast, value)[1]
-
-
-def _constrained(
-    standardised: Standardised, start: Array, contrast: Array, value: float
-) -> tuple[Array, Sums]:
-    def evaluate(point: Array) -> Sums:
-        sums = standardised.sums(point[None, :], information=True)
-        if sums.information is None:
-            raise ArithmeticError("the information was not computed")
-        return Sums(float(sums.log_likelihood[0]), sums.gradient[0], sums.information[0])
-
-    point, here = start, evaluate(start)
-    missing = value - float(contrast @ start)
-    for iteration in range(ITERATIONS):
-        curvature = Curvature.of(here.information)
-        if curvature is None:
-            raise ArithmeticError("the information matrix is singular along the profile")
-        h = curvature.solve(contrast)
-        size = float(contrast @ h)
-        if iteration == 0 and missing != 0:
-            # On to the constraint first, along the profile's tangent.
-            point = point + h * (missing / size)
-            here = evaluate(point)
-            continue
-        g = curvature.solve(here.gradient)
-        ahead = float(contrast @ g)
-        decrement = float(here.gradient @ g) - ahead**2 / size
-        if decrement < 1e-12 * max(1.0, abs(here.log_likelihood)):
-            return point, here
-        step = g - h * (ahead / size)
-        for _ in range(HALVINGS):
-            there = evaluate(point + step)
-            if there.log_likelihood >= here.log_likelihood - 1e-13 * max(1.0, abs(here.log_likelihood)):
-                break
-            step = step / 2
-        else:
-            return point, here
-        point, here = point + step, there
-    raise ArithmeticError("the steps along the profile did not settle")
+    people = standardised.observed.people
+    found = maximise(standardised.one, start, people, standardised.bound, held=contrast, iterations=STEPS)
+    if not found.converged:
+        raise ArithmeticError("the steps along the profile did not settle")
+    return found

@@ -256,6 +256,12 @@ class LogLikelihood:
             total.add(sums)
         return total
 
+    def bound(self) -> Array:
+        """X'CX / 4, which no information matrix exceeds: the information at zero without offset."""
+        plain = Observed(self.observed.blocks, self.observed.event, self.observed.counts)
+        at_zero = LogLikelihood(plain, self.centre, self.part, self.engine)
+        return at_zero(np.zeros(self.observed.blocks.p)).information
+
     def _compiled_lanes(
         self, coefficients: Array, information: bool, part: Part, threads: int | None
     ) -> list[Sums]:

@@ -8,6 +8,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from fourfold.errors import EstimationError
+from fourfold.models import rank
 from fourfold.models.blocks import Blocks
 from fourfold.models.centring import Centring, centring, constant_column
 from fourfold.models.likelihood import LogLikelihood, Observed, Part
@@ -109,7 +110,7 @@ def fit(
     check_contrast(observed)
     centred = centring(blocks)
     optimum = climb(observed, centred, start, engine=engine)
-    if optimum.iterations == 1 and np.isnan(optimum.decrement):
+    if not optimum.converged and rank.dependent(blocks, counts):
         raise EstimationError(
             "No estimate exists: some columns of the model can be computed from the others.",
             "Remove variables that carry the same information.",
@@ -133,7 +134,7 @@ def climb(
         first = start if centred is None else centred.inward(start)
     # Eleven digits of the covariance where passes are cheap, nine where they are not.
     settled = 1e-22 if observed.blocks.n < WARM_FROM else 1e-18
-    return maximise(evaluate, first, observed.people, iterations=iterations, settled=settled)
+    return maximise(evaluate, first, observed.people, evaluate.bound, iterations=iterations, settled=settled)
 
 
 def check_contrast(observed: Observed) -> None:
@@ -165,13 +166,9 @@ def _start(observed: Observed, evaluate: LogLikelihood) -> Array:
     if min(events, rows - events) < EVENTS_PER_COLUMN * observed.blocks.p:
         return cold
     share_of_rows = observed.blocks.n / rows
-    approach = maximise(
-        LogLikelihood(observed, evaluate.centre, part, evaluate.engine),
-        cold,
-        observed.people / share_of_rows,
-        enough=0.1,
-        iterations=15,
-    )
+    of_part = LogLikelihood(observed, evaluate.centre, part, evaluate.engine)
+    people = observed.people / share_of_rows
+    approach = maximise(of_part, cold, people, of_part.bound, enough=0.1, iterations=15)
     curvature = Curvature.of(approach.sums.information * share_of_rows)
     if not approach.converged or curvature is None:
         return cold
@@ -273,9 +270,12 @@ def null_log_likelihood(observed: Observed) -> float:
     """Log-likelihood of the intercept alone: d log(d/n) + (n - d) log(1 - d/n) without an offset."""
     if observed.offset is None:
         d, n = observed.events, observed.people
+        if d in (0, n):
+            return 0.0
         return float(d * np.log(d / n) + (n - d) * np.log1p(-d / n))
     alone = Observed(
         Blocks.from_matrix(np.ones((observed.blocks.n, 1))), observed.event, observed.counts, observed.offset
     )
     start = np.array([_log_odds_less_offset(observed)])
-    return maximise(LogLikelihood(alone), start, observed.people).sums.log_likelihood
+    evaluate = LogLikelihood(alone)
+    return maximise(evaluate, start, observed.people, evaluate.bound).sums.log_likelihood

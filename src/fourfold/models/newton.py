@@ -1,4 +1,8 @@
-"""Newton's method with step-halving, stopped by the Newton decrement."""
+"""Newton's method with step-halving, stopped by the Newton decrement.
+
+Far from the maximum hardly a row may carry information, and Newton steps lead nowhere. A quarter of
+X'CX bounds the information everywhere; steps with that bound in its place always climb.
+"""
 
 from __future__ import annotations
 
@@ -14,7 +18,13 @@ Array = NDArray[np.float64]
 Evaluate = Callable[[Array], Sums]
 
 ITERATIONS = 50
-HALVINGS = 30
+HALVINGS = 6
+
+SHARES_OF_BOUND = (0.0, 1e-9, 1e-5, 1e-2)
+"""How much of the bound on the information is added, from plain Newton steps to careful ones."""
+
+ENOUGH_RISE = 1e-4
+"""A step must bring this share of what the gradient promises."""
 
 SINGULAR = 1e-14
 """Pivots of a scaled information matrix below this are rounding: the columns depend on each other
@@ -93,8 +103,9 @@ def maximise(
     evaluate: Evaluate,
     start: Array,
     people: float,
+    bound: Callable[[], Array],
     *,
-    free: NDArray[np.intp] | None = None,
+    held: Array | None = None,
     iterations: int = ITERATIONS,
     enough: float | None = None,
     settled: float = 1e-22,
@@ -110,47 +121,102 @@ def maximise(
     start : (p,) float array
     people : float
         Rows, counted by their frequency.
-    free : array of int or None
-        Coefficients that may move; None for all.
-    enough : float or None
+    bound : callable
+        Gives a (p, p) matrix that no information exceeds, X'CX / 4; asked for only when a Newton
+        step fails.
+    held : (p,) float array, optional
+        A contrast c: c'b keeps the value it has at the start. A maximum whose information is
+        singular is then accepted, as only its height is wanted.
+    enough : float, optional
         A looser bound on the decrement, for a first approach.
+
+    References
+    ----------
+    Boehning & Lindsay (1988). Annals of the Institute of Statistical Mathematics 40, 641-663.
+    (the bound)
     """
-    everywhere = np.arange(len(start)) if free is None else free
-    coefficients = start.copy()
-    sums = evaluate(coefficients)
+    point, here = start.copy(), evaluate(start)
+    within = None if held is None else _across(held)
+    limit: Array | None = None
     extra_step_taken = False
     for iteration in range(1, iterations + 1):
-        gradient = sums.gradient[everywhere]
-        curvature = Curvature.of(sums.information[np.ix_(everywhere, everywhere)])
-        if curvature is None:
-            return Optimum(coefficients, sums, np.nan, iteration, False)
-        whitened = curvature.whiten(gradient)
-        decrement = float(whitened @ whitened)
-        bound = 1e-12 * max(1.0, abs(sums.log_likelihood))
+        step = _step(here, here.information, within)
+        regular = step is not None
+        if step is None:
+            limit = bound() if limit is None else limit
+            step = _step(here, here.information + SHARES_OF_BOUND[1] * limit, within)
+        if step is None:
+            return Optimum(point, here, np.nan, iteration, False)
+        direction, decrement = step
+        small = 1e-12 * max(1.0, abs(here.log_likelihood))
+        acceptable = regular or held is not None
         if enough is not None and decrement < enough:
-            return Optimum(coefficients, sums, decrement, iteration, True)
+            return Optimum(point, here, decrement, iteration, acceptable)
         # The information moves by about sqrt(decrement / people) from here to the maximum.
-        if decrement < bound and (decrement < settled * people or extra_step_taken):
-            return Optimum(coefficients, sums, decrement, iteration, True)
-        extra_step_taken = decrement < bound
-        step = np.zeros_like(coefficients)
-        step[everywhere] = curvature.solve(gradient)
-        moved = _halve_until_it_rises(evaluate, coefficients, step, sums)
+        if decrement < small and acceptable and (decrement < settled * people or extra_step_taken):
+            return Optimum(point, here, decrement, iteration, True)
+        extra_step_taken = decrement < small
+        moved = _halve_until_it_rises(evaluate, point, direction, decrement, here) if regular else None
+        if moved is None and not extra_step_taken:
+            limit = bound() if limit is None else limit
+            moved = _careful_step(evaluate, point, here, limit, within)
         if moved is None:
-            return Optimum(coefficients, sums, decrement, iteration, decrement < bound)
-        coefficients, sums = moved
-    return Optimum(coefficients, sums, decrement, iterations, False)
+            return Optimum(point, here, decrement, iteration, acceptable and extra_step_taken)
+        point, here = moved
+    return Optimum(point, here, decrement, iterations, False)
+
+
+def _across(contrast: Array) -> Array:
+    """Orthonormal directions that leave c'b as it is: the columns of a (p, p - 1) matrix."""
+    basis = np.linalg.qr(contrast[:, None], mode="complete").Q
+    return np.asarray(basis[:, 1:])
+
+
+def _step(here: Sums, information: Array, within: Array | None) -> tuple[Array, float] | None:
+    """The step to the maximum of the quadratic model, and twice the rise that it promises.
+
+    ``within`` has the directions that may be gone as its columns; None for all.
+    """
+    if within is None:
+        curvature = Curvature.of(information)
+        if curvature is None:
+            return None
+        step = curvature.solve(here.gradient)
+        return step, max(float(here.gradient @ step), 0.0)
+    if within.shape[1] == 0:
+        return np.zeros(len(within)), 0.0
+    curvature = Curvature.of(within.T @ information @ within)
+    if curvature is None:
+        return None
+    gradient = within.T @ here.gradient
+    step = curvature.solve(gradient)
+    return within @ step, max(float(gradient @ step), 0.0)
+
+
+def _careful_step(
+    evaluate: Evaluate, point: Array, here: Sums, limit: Array, within: Array | None
+) -> tuple[Array, Sums] | None:
+    """A step with more and more of the bound in place of the information, until one rises."""
+    matrices = [here.information + share * limit for share in SHARES_OF_BOUND[1:]]
+    for matrix in [*matrices, limit]:
+        step = _step(here, matrix, within)
+        if step is not None:
+            moved = _halve_until_it_rises(evaluate, point, *step, here)
+            if moved is not None:
+                return moved
+    return None
 
 
 def _halve_until_it_rises(
-    evaluate: Evaluate, coefficients: Array, step: Array, sums: Sums
+    evaluate: Evaluate, point: Array, step: Array, decrement: float, here: Sums
 ) -> tuple[Array, Sums] | None:
-    """Take the step, or the first of its halves that does not lower the log-likelihood."""
-    rounding = 1e-13 * max(1.0, abs(sums.log_likelihood))
+    """Take the step, or the first of its halves that raises the log-likelihood as it should."""
+    rounding = 1e-13 * max(1.0, abs(here.log_likelihood))
+    length = 1.0
     for _ in range(HALVINGS):
-        candidate = coefficients + step
+        candidate = point + length * step
         there = evaluate(candidate)
-        if there.log_likelihood >= sums.log_likelihood - rounding:
+        if there.log_likelihood >= here.log_likelihood + ENOUGH_RISE * length * decrement - rounding:
             return candidate, there
-        step = step / 2
+        length /= 2
     return None

@@ -139,9 +139,11 @@ def profile_contrast(
         observed, inner, contrast = left.observed, left.fit(), contrast[left.columns]
     lower, upper = _both_limits(observed, inner, contrast[None, :], confidence)
     standardised = Standardised.of(observed, inner.covariance)
-    null = constrained_maximum(
-        standardised, standardised.inward(inner.coefficients), standardised.change.T @ contrast, 0.0
-    )
+    at = standardised.inward(inner.coefficients)
+    along = standardised.change.T @ contrast
+    spread = standardised.inward_covariance(inner.covariance) @ along
+    on_null = at - spread * (along @ at) / (along @ spread)
+    null = constrained_maximum(standardised, on_null, along).sums
     statistic = np.array([max(0.0, 2 * (inner.log_likelihood - null.log_likelihood))])
     return ContrastLimits(lower, upper, statistic, np.asarray(chdtrc(1, statistic)))
 
@@ -210,21 +212,20 @@ def _advance(
             except np.linalg.LinAlgError:
                 break
         c = contrasts[alive]
-        g = np.einsum("kij,kj->ki", inverse[alive], here.gradient)
-        h = np.einsum("kij,kj->ki", inverse[alive], c)
-        size = np.einsum("ki,ki->k", c, h)
-        ahead = np.einsum("ki,ki->k", c, g)
-        rise = np.einsum("ki,ki->k", here.gradient, g)
-        nuisance = rise - ahead**2 / size
-        error = np.abs(2 * (here.log_likelihood - target)) + np.abs(nuisance)
-        room = 2 * (here.log_likelihood + rise / 2 - target)
-        good = np.isfinite(error) & (room > 0)
+        # A point that strayed far may overflow; it is then not good, and drawn back.
+        with np.errstate(all="ignore"):
+            g = np.einsum("kij,kj->ki", inverse[alive], here.gradient)
+            h = np.einsum("kij,kj->ki", inverse[alive], c)
+            size = np.einsum("ki,ki->k", c, h)
+            pull = (np.einsum("ki,ki->k", c, g) / size)[:, None]
+            # What is left of the gradient across the contrast, and the rise it still promises.
+            nuisance = np.einsum("ki,ki->k", here.gradient - c * pull, g - h * pull)
+            error = np.abs(2 * (here.log_likelihood - target)) + np.abs(nuisance)
+            room = 2 * (here.log_likelihood - target) + np.einsum("ki,ki->k", here.gradient, g)
+            outward = h * (sides[alive] * np.sqrt(room / size))[:, None]
+        good = np.isfinite(error) & (room > 0) & (size > 0)
         # Too far out for the quadratic model: half way back to the estimate.
-        step = np.where(
-            good[:, None],
-            g + h * (sides[alive] * np.sqrt(np.where(good, room / size, 0)))[:, None],
-            (centre - points[alive]) / 2,
-        )
+        step = np.where(good[:, None], g + outward, (centre - points[alive]) / 2)
         points[alive] += step
         done = good & (error < tolerance)
         settled[alive[done]] = True
