@@ -170,7 +170,7 @@ def _basis(writer: Writer, exposures: int) -> str:
             if participants.incomplete != 0
             else None
         ),
-        eligible=writer.numbers.count(participants.eligible, hidden.get("eligible")),
+        eligible=(None if participants.eligible is None else writer.numbers.count(participants.eligible)),
         per_parameter=None if per_parameter is None else writer.numbers.number(per_parameter, 1),
     )
 

@@ -187,6 +187,29 @@ def test_a_finding_on_separation_would_tell_a_hidden_zero() -> None:
     assert hide(replace(truth, analysis=replace(truth.analysis, hide_zero=True))).findings == []
 
 
+def test_that_no_estimate_exists_would_tell_a_hidden_zero() -> None:
+    truth = small_table(exposed_events=0)
+    first = truth.estimates.adjusted[0]
+    lost = replace(
+        first, note="separated downward", log_odds_ratio=None, standard_error=None, odds_ratio=None,
+        lower=None, upper=0.7, p_value=0.01,
+    )  # fmt: skip
+    adjusted = [lost if one.term == first.term else one for one in truth.estimates.adjusted]
+    model = replace(
+        truth.model, parameters=[first.term], terms=[first.term], coding=["1 for present"],
+        coefficients=[None], covariance=None, separated=[first.term], separation="quasi-complete",
+    )  # fmt: skip
+    truth = replace(truth, estimates=replace(truth.estimates, adjusted=adjusted), model=model)
+    shown = hide(truth)
+    assert shown.estimates.adjusted[0].note == "separated downward"
+    assert shown.model.separated == [first.term]
+    strict = hide(replace(truth, analysis=replace(truth.analysis, hide_zero=True)))
+    told = strict.estimates.adjusted[0]
+    assert (told.note, told.upper, told.p_value, told.events) == ("hidden", None, None, None)
+    assert (strict.model.separated, strict.model.separation) == ([], None)
+    assert hide(strict) == strict
+
+
 @pytest.mark.parametrize("seed", range(40))
 def test_a_crude_odds_ratio_is_shown_with_all_its_counts_or_not_at_all(seed: int) -> None:
     """From two group sizes and an odds ratio with two decimals the counts can often be found.

@@ -68,6 +68,7 @@ def hide(results: tree.Results) -> tree.Results:
     }
     hiding = rewrite.hide_at(rewrite.round_at(results, rounded), hidden)
     hiding = _with_notes(hiding, hidden)
+    hiding = fit.without_separation(hiding, fit.separated_by_hidden(results, ledger, names))
     hiding = _without_shares(_with_thin_curve(hiding, truth, ledger), ledger)
     hiding = replace(hiding, findings=findings.hide(results.findings, ledger, _shown(hiding)))
     return _without_hash(hiding, ledger)

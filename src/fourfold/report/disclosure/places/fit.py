@@ -8,10 +8,10 @@ there are unknown counts, and they can be solved.
 from __future__ import annotations
 
 from collections.abc import Iterator
-from dataclasses import fields
+from dataclasses import fields, replace
 from math import prod
 
-from fourfold.report.disclosure.ledger import SMALL, Ledger, Path
+from fourfold.report.disclosure.ledger import DERIVED, SMALL, Ledger, Path
 from fourfold.report.disclosure.places.analysed import ESTIMATE_FIGURES, cells
 from fourfold.report.disclosure.places.keys import ALL, ANALYSED, EVENT, NONE, Names, everyone, people
 from fourfold.results import tree
@@ -35,6 +35,43 @@ def figures(results: tree.Results, ledger: Ledger, names: Names) -> Iterator[Pat
     yield from _revealing(results, ledger, names)
     yield from _with_hidden_totals(results, ledger)
     yield from _of_hidden_levels(results, ledger, names)
+    told = separated_by_hidden(results, ledger, names)
+    for place, estimate in enumerate(results.estimates.adjusted):
+        if estimate.term in told:
+            yield from (("estimates", "adjusted", place, field) for field in ESTIMATE_FIGURES)
+
+
+def separated_by_hidden(results: tree.Results, ledger: Ledger, names: Names) -> set[str]:
+    """Terms without a finite estimate that have a hidden count, where zeros are hidden too.
+
+    That no estimate exists tells that a cell is empty, in the adjusted model as in the crude one.
+    """
+    if not ledger.limit.hide_zero:
+        return set()
+    terms = {one.term for one in results.estimates.adjusted if (one.note or "").startswith("separated")}
+    return {
+        term
+        for term in terms
+        if names.categorical(term) and any(ledger.is_hidden(key) for key in _counts_of(term, names))
+    }
+
+
+def without_separation(results: tree.Results, told: set[str]) -> tree.Results:
+    """The model without the names of parameters that an empty hidden cell leaves without estimate."""
+    if not told:
+        return results
+    model = results.model
+    term_of = dict(zip(model.parameters, model.terms, strict=True))
+    kept = [name for name in model.separated if term_of.get(name) not in told]
+    return replace(
+        results,
+        model=replace(
+            model,
+            separated=kept,
+            separation=model.separation if kept else None,
+            hidden={**model.hidden, "separated": DERIVED, "separation": DERIVED},
+        ),
+    )
 
 
 def _revealing(results: tree.Results, ledger: Ledger, names: Names) -> Iterator[Path]:
