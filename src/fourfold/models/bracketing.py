@@ -15,7 +15,7 @@ Array = NDArray[np.float64]
 
 DOUBLINGS = 60
 
-STEPS = 150
+STEPS = 1000
 """Newton steps along a profile: far out the likelihood is nearly flat and each gains little."""
 
 

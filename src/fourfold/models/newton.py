@@ -17,7 +17,7 @@ from fourfold.models.likelihood import Sums
 Array = NDArray[np.float64]
 Evaluate = Callable[[Array], Sums]
 
-ITERATIONS = 50
+ITERATIONS = 200
 HALVINGS = 6
 
 SHARES_OF_BOUND = (0.0, 1e-9, 1e-5, 1e-2)
@@ -175,22 +175,24 @@ def _across(contrast: Array) -> Array:
 def _step(here: Sums, information: Array, within: Array | None) -> tuple[Array, float] | None:
     """The step to the maximum of the quadratic model, and twice the rise that it promises.
 
-    ``within`` has the directions that may be gone as its columns; None for all.
+    ``within`` has the directions that may be gone as its columns; None for all. None is returned
+    where the information is singular, or so small that the step overflows.
     """
-    if within is None:
-        curvature = Curvature.of(information)
-        if curvature is None:
-            return None
-        step = curvature.solve(here.gradient)
-        return step, max(float(here.gradient @ step), 0.0)
-    if within.shape[1] == 0:
-        return np.zeros(len(within)), 0.0
-    curvature = Curvature.of(within.T @ information @ within)
+    gradient = here.gradient
+    if within is not None:
+        if within.shape[1] == 0:
+            return np.zeros(len(within)), 0.0
+        gradient, information = within.T @ gradient, within.T @ information @ within
+    curvature = Curvature.of(information)
     if curvature is None:
         return None
-    gradient = within.T @ here.gradient
-    step = curvature.solve(gradient)
-    return within @ step, max(float(gradient @ step), 0.0)
+    with np.errstate(over="ignore", invalid="ignore"):
+        step = curvature.solve(gradient)
+        promised = float(gradient @ step)
+        step = step if within is None else within @ step
+    if not (np.isfinite(promised) and bool(np.isfinite(step).all())):
+        return None
+    return step, max(promised, 0.0)
 
 
 def _careful_step(

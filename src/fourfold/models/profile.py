@@ -28,7 +28,7 @@ SLOW = 0.05
 
 @dataclass(frozen=True, slots=True)
 class ProfileLimits:
-    """Limits on the log odds scale; infinite on an unbounded side.
+    """Limits on the log odds scale; infinite on an unbounded side, NaN where none could be computed.
 
     Attributes
     ----------
@@ -143,8 +143,11 @@ def profile_contrast(
     along = standardised.change.T @ contrast
     spread = standardised.inward_covariance(inner.covariance) @ along
     on_null = at - spread * (along @ at) / (along @ spread)
-    null = constrained_maximum(standardised, on_null, along).sums
-    statistic = np.array([max(0.0, 2 * (inner.log_likelihood - null.log_likelihood))])
+    try:
+        null = constrained_maximum(standardised, on_null, along).sums.log_likelihood
+    except ArithmeticError:
+        null = np.nan
+    statistic = np.array([np.maximum(0.0, 2 * (inner.log_likelihood - null))])
     return ContrastLimits(lower, upper, statistic, np.asarray(chdtrc(1, statistic)))
 
 
@@ -175,8 +178,13 @@ def _both_limits(observed: Observed, fit: Fit, contrasts: Array, confidence: flo
         values[together], settled[together] = _advance(
             standardised, centre, start[together], both[together], sides[together], target
         )
-    for place in np.flatnonzero(~settled):
-        values[place] = limit_by_bracketing(standardised, centre, both[place], float(sides[place]), target)
+    for place in np.flatnonzero(~settled).tolist():
+        try:
+            values[place] = limit_by_bracketing(
+                standardised, centre, both[place], float(sides[place]), target
+            )
+        except ArithmeticError:
+            values[place] = np.nan
     return values[:m], values[m:]
 
 
@@ -266,5 +274,8 @@ def _one_sided(
         blocks.rows(rows).columns([column, *others]), event[rows], None if counts is None else counts[rows]
     )
     target = fit.log_likelihood - drop_of(confidence)
-    limit = limit_of_unbounded(Standardised.plain(observed), 0, direction, target)
+    try:
+        limit = limit_of_unbounded(Standardised.plain(observed), 0, direction, target)
+    except ArithmeticError:
+        limit = np.nan
     return (limit, np.inf) if direction == UPWARD else (-np.inf, limit)
