@@ -11,7 +11,7 @@ from pathlib import Path
 import numpy as np
 
 SEED = 19870914
-CASES, CONTROLS = 46, 88
+CASES, CONTROLS = 64, 112
 
 
 def main() -> None:
@@ -20,7 +20,7 @@ def main() -> None:
     for ill, size in ((True, CASES), (False, CONTROLS)):
         for _ in range(size):
             age_group = draw.choice(["child", "adult", "senior"], p=[0.2, 0.55, 0.25])
-            custard = draw.random() < (0.83 if ill else 0.38)
+            custard = draw.random() < (0.80 if ill else 0.40)
             rows.append(
                 {
                     "status": "case" if ill else "control",
@@ -29,7 +29,7 @@ def main() -> None:
                     "custard": "yes" if custard else "no",
                     "cheese": "yes" if draw.random() < (0.5 if ill else 0.47) else "no",
                     # Nobody who stayed well had tasted the raw-milk posset.
-                    "posset": "yes" if ill and draw.random() < 0.16 else "no",
+                    "posset": "yes" if ill and draw.random() < 0.10 else "no",
                     "cider_cups": int(draw.poisson(1.6)) if age_group != "child" else 0,
                 }
             )

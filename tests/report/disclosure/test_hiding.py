@@ -161,9 +161,28 @@ def test_with_a_cell_go_the_other_cells_and_all_that_is_computed_from_them() -> 
     assert [crude.odds_ratio, crude.lower, crude.upper, crude.p_value, crude.standard_error] == [None] * 5
     assert crude.events is None
     assert adjusted.events is None
-    assert adjusted.odds_ratio is not None
+    # An adjusted error below that of a single person in the cell would tell that there are more.
+    assert (adjusted.note, adjusted.odds_ratio, adjusted.upper, adjusted.p_value) == (
+        "hidden",
+        None,
+        None,
+        None,
+    )
+    assert hidden.model.covariance is None
     assert hidden.participants.events is not None
     assert hidden.estimates.crude[1].odds_ratio is not None
+    assert hidden.estimates.adjusted[1].odds_ratio is not None
+
+
+@pytest.mark.parametrize(("events", "kept"), [(1, True), (2, False), (3, False), (4, False)])
+def test_an_adjusted_interval_stays_only_if_it_allows_a_single_person_in_the_cell(events, kept) -> None:
+    # Floor of the adjusted standard error: Woolf's (1955) from the same cells, a theorem for maximum
+    # likelihood with an intercept on the same rows.
+    truth = small_table(events)
+    before, after = truth.estimates.adjusted[0], hide(truth).estimates.adjusted[0]
+    assert before.standard_error is not None
+    assert (before.standard_error > 1.0) == kept
+    assert (after.odds_ratio is not None) == kept
 
 
 def test_a_zero_is_shown_unless_zeros_are_hidden() -> None:
@@ -405,7 +424,7 @@ def test_findings_lose_their_small_counts_and_what_stands_beside() -> None:
 
 
 def test_a_finding_does_not_tell_what_is_hidden_elsewhere() -> None:
-    truth = small_table()
+    truth = small_table(1)
     table = truth.tables[0]
     finding = tree.Finding(
         id="COD-reference-small", grade="concern", section="results", source="", about=["c0"],

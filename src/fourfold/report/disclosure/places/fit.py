@@ -2,7 +2,8 @@
 
 An adjusted estimate is safe where many different people stand behind it. It is not where the
 model has few patterns of its covariates: then what is printed of the fit is as many equations as
-there are unknown counts, and they can be solved.
+there are unknown counts, and they can be solved. Nor is it where its precision bounds a hidden
+count from below.
 """
 
 from __future__ import annotations
@@ -11,7 +12,7 @@ from collections.abc import Iterator
 from dataclasses import fields, replace
 from math import prod
 
-from fourfold.report.disclosure.ledger import DERIVED, SMALL, Ledger, Path
+from fourfold.report.disclosure.ledger import DERIVED, SMALL, Key, Ledger, Path
 from fourfold.report.disclosure.places.analysed import ESTIMATE_FIGURES, cells
 from fourfold.report.disclosure.places.keys import ALL, ANALYSED, EVENT, NONE, Names, everyone, people
 from fourfold.results import tree
@@ -39,6 +40,47 @@ def figures(results: tree.Results, ledger: Ledger, names: Names) -> Iterator[Pat
     for place, estimate in enumerate(results.estimates.adjusted):
         if estimate.term in told:
             yield from (("estimates", "adjusted", place, field) for field in ESTIMATE_FIGURES)
+    yield from _too_precise(results, ledger, names)
+
+
+def _too_precise(results: tree.Results, ledger: Ledger, names: Names) -> Iterator[Path]:
+    """Adjusted estimates whose precision alone tells how many people are in a hidden cell.
+
+    On the same rows, and with an intercept, an adjusted standard error is never below Woolf's from
+    the level's own four cells: score equations fix the sum of risks in both groups, the weight
+    p (1 - p) is concave, and further columns only take information away. An interval too narrow for
+    a single person in a hidden cell therefore narrows the count down, often to one value.
+    """
+    revealing = set()
+    for place, estimate in enumerate(results.estimates.adjusted):
+        reference = names.reference(estimate.term)
+        if estimate.standard_error is None or reference is None or not names.categorical(estimate.term):
+            continue
+        level = names.level(estimate.term, estimate.level)
+        four = cells(estimate.term, (level, reference))
+        if not _excludes_one_person(estimate.standard_error, four, ledger):
+            continue
+        revealing.add(estimate.term)
+        yield from (("estimates", "adjusted", place, field) for field in ESTIMATE_FIGURES)
+    if not revealing:
+        return
+    yield ("model", "covariance")
+    for place, test in enumerate(results.term_tests):
+        if test.term in revealing:
+            yield from (("term_tests", place, field) for field in ("statistic", "p_value"))
+    # A prediction model is nothing without its equation; a coefficient alone has no precision.
+    if results.study.purpose != "prediction":
+        for place, term in enumerate(results.model.terms):
+            if term in revealing:
+                yield ("model", "coefficients", place)
+
+
+def _excludes_one_person(standard_error: float, keys: list[Key], ledger: Ledger) -> bool:
+    counts = [ledger.counts[key] for key in keys if key in ledger.counts]
+    if not any(count.hidden == SMALL for count in counts):
+        return False
+    shown = sum(1 / count.value for count in counts if not count.hidden and count.value)
+    return standard_error**2 < 1 + shown
 
 
 def separated_by_hidden(results: tree.Results, ledger: Ledger, names: Names) -> set[str]:
